@@ -1,0 +1,1 @@
+"""Own solvers in coherent SI: network, transient, heat. No published formula, no units."""

@@ -1,0 +1,1 @@
+"""From the unit file to the signed record: inputs, assessment, run, record, signature, comparison."""
