@@ -93,5 +93,6 @@ class RunError(KitError):
 
 def did_you_mean(name: str, known: Iterable[str]) -> str:
     """Return `` (did you mean 'x'?)`` for the nearest known name, or an empty string."""
-    near = get_close_matches(name, list(known), n=1)
-    return f" (did you mean '{near[0]}'?)" if near else ""
+    folded = {candidate.casefold(): candidate for candidate in known}
+    near = get_close_matches(name.casefold(), list(folded), n=1)
+    return f" (did you mean '{folded[near[0]]}'?)" if near else ""

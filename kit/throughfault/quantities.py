@@ -26,6 +26,7 @@ _registry: pint.UnitRegistry[float] = pint.UnitRegistry(autoconvert_offset_to_ba
 UNITS: dict[str, tuple[str, str]] = {
     "1": ("number", "dimensionless"),
     "%": ("ratio", "percent"),
+    "p.u.": ("ratio", "dimensionless"),
     "V": ("voltage", "volt"),
     "kV": ("voltage", "kilovolt"),
     "mA": ("current", "milliampere"),
@@ -84,7 +85,7 @@ KINDS: dict[str, tuple[str, ...]] = {
 }
 
 _NUMBER = r"[+-]?(?:\d+(?:\.\d*)?|\.\d+)(?:[eE][+-]?\d{1,3})?"
-_QUANTITY = re.compile(rf"({_NUMBER})\s*(\S.*)", re.ASCII)
+_QUANTITY = re.compile(rf"({_NUMBER})\s*([A-Za-z%].*)", re.ASCII)
 _BARE = re.compile(_NUMBER, re.ASCII)
 _IMPEDANCE = re.compile(rf"({_NUMBER})\s*(\w+)\s*([+-])\s*((?:\d+(?:\.\d*)?|\.\d+)(?:[eE][+-]?\d{{1,3}})?)j\s*(\w+)", re.ASCII)
 
@@ -176,7 +177,7 @@ def parse(text: object, unit: str) -> Quantity:
         raise QuantityError(wanted + problem)
     found = match[2]
     if found not in UNITS:
-        raise QuantityError(f"{wanted}, got {_shown(text)} with unknown unit '{found}'{did_you_mean(found, UNITS)}.")
+        raise QuantityError(f"{wanted}, got {_shown(text)} with unknown unit '{found}'{did_you_mean(found, KINDS[UNITS[unit][0]])}.")
     if UNITS[found][0] != UNITS[unit][0]:
         raise QuantityError(f"{wanted}, got {_shown(text)}, which is of kind {UNITS[found][0]}.")
     value = float(match[1])
