@@ -1,0 +1,85 @@
+"""JSON read without mercy: UTF-8, no repeated key, no NaN, nothing that two readers could read differently."""
+
+from __future__ import annotations
+
+import json
+import math
+from pathlib import Path
+from typing import NoReturn, TypeVar
+
+from pydantic import BaseModel, ValidationError
+
+__all__ = ["parse_strict", "read_bounded", "read_model"]
+
+Model = TypeVar("Model", bound=BaseModel)
+
+
+def parse_strict(data: bytes) -> object:
+    """Return the value of a JSON text.
+
+    Raises
+    ------
+    ValueError
+        One sentence part, to stand after the name of the file.
+    """
+    try:
+        return json.loads(
+            data.decode("utf-8"),
+            object_pairs_hook=_unique_keys,
+            parse_constant=_refuse_constant,
+            parse_float=_finite,
+        )
+    except RecursionError:
+        message = "is nested too deeply to be read"
+        raise ValueError(message) from None
+    except ValueError as error:  # includes UnicodeDecodeError and JSONDecodeError
+        message = f"is not strict JSON in UTF-8: {error}"
+        raise ValueError(message) from None
+
+
+def read_bounded(path: Path, limit: int) -> bytes:
+    """Return the bytes of a file of at most `limit` bytes; ValueError or OSError otherwise."""
+    with path.open("rb") as stream:
+        data = stream.read(limit + 1)
+    if len(data) > limit:
+        message = f"is larger than the {limit} bytes allowed"
+        raise ValueError(message)
+    return data
+
+
+def read_model(kind: type[Model], data: bytes) -> Model:
+    """Return a strict JSON text as a model; ValueError holds every fault, separated by semicolons."""
+    try:
+        return kind.model_validate(parse_strict(data))
+    except ValidationError as error:
+        raise ValueError("; ".join(_model_faults(error))) from None
+
+
+def _unique_keys(pairs: list[tuple[str, object]]) -> dict[str, object]:
+    found: dict[str, object] = {}
+    for key, value in pairs:
+        if key in found:
+            message = f"the key {key!r} stands twice"
+            raise ValueError(message)
+        found[key] = value
+    return found
+
+
+def _refuse_constant(text: str) -> NoReturn:
+    message = f"{text} is not a JSON number"
+    raise ValueError(message)
+
+
+def _finite(text: str) -> float:
+    number = float(text)
+    if not math.isfinite(number):
+        message = f"{text} is beyond the range of a double"
+        raise ValueError(message)
+    return number
+
+
+def _model_faults(error: ValidationError) -> list[str]:
+    return [
+        f"{'.'.join(str(step) for step in fault['loc']) or 'the document'}: {fault['msg']}"
+        for fault in error.errors(include_url=False, include_context=False, include_input=False)
+    ]
