@@ -16,7 +16,7 @@ import pint
 
 from throughfault.errors import DeclarationError, QuantityError, did_you_mean
 
-__all__ = ["KINDS", "UNITS", "Quantity", "convert", "parse", "parse_impedance"]
+__all__ = ["KINDS", "UNITS", "Quantity", "convert", "expectation", "parse", "parse_impedance", "shown"]
 
 LONGEST_TEXT = 64
 
@@ -87,7 +87,9 @@ KINDS: dict[str, tuple[str, ...]] = {
 _NUMBER = r"[+-]?(?:\d+(?:\.\d*)?|\.\d+)(?:[eE][+-]?\d{1,3})?"
 _QUANTITY = re.compile(rf"({_NUMBER})\s*([A-Za-z%].*)", re.ASCII)
 _BARE = re.compile(_NUMBER, re.ASCII)
-_IMPEDANCE = re.compile(rf"({_NUMBER})\s*(\w+)\s*([+-])\s*((?:\d+(?:\.\d*)?|\.\d+)(?:[eE][+-]?\d{{1,3}})?)j\s*(\w+)", re.ASCII)
+_IMPEDANCE = re.compile(
+    rf"({_NUMBER})\s*(\w+)\s*([+-])\s*((?:\d+(?:\.\d*)?|\.\d+)(?:[eE][+-]?\d{{1,3}})?)j\s*(\w+)", re.ASCII
+)
 
 
 @lru_cache(maxsize=512)
@@ -149,12 +151,18 @@ class Quantity:
         return f"{self.value:.15g} {self.unit}" if self.unit != "1" else f"{self.value:.15g}"
 
 
-def _expectation(unit: str) -> str:
+def expectation(unit: str) -> str:
+    """Say what a text must be, for a message: kind, example and the units allowed."""
     kind = UNITS[unit][0]
-    return f"{'an' if kind[0] in 'aeiou' else 'a'} {kind} such as \"1 {unit}\" (unit one of {', '.join(KINDS[kind])})"
+    return f'{"an" if kind[0] in "aeiou" else "a"} {kind} such as "1 {unit}" (unit one of {", ".join(KINDS[kind])})'
 
 
-def _shown(text: object) -> str:
+def shown(text: object) -> str:
+    """Show a value in a message: shortened, and never so deep or long that showing it fails."""
+    if isinstance(text, dict | list):
+        return "a table" if isinstance(text, dict) else "an array"
+    if isinstance(text, int) and abs(text) >= 10**LONGEST_TEXT:
+        return f"a whole number of more than {LONGEST_TEXT} digits"
     shown = repr(text)
     return shown if len(shown) <= LONGEST_TEXT else f"{shown[:40]}... ({len(shown)} characters)"
 
@@ -167,22 +175,24 @@ def parse(text: object, unit: str) -> Quantity:
     QuantityError
         With what was expected and what was found; the caller puts the key in front.
     """
-    wanted = f"must be {_expectation(unit)}"
+    wanted = f"must be {expectation(unit)}"
     if not isinstance(text, str):
-        raise QuantityError(f"{wanted}, got {_shown(text)}.")
+        raise QuantityError(f"{wanted}, got {shown(text)}.")
     match = _QUANTITY.fullmatch(text.strip()) if len(text) <= LONGEST_TEXT else None
     if match is None:
         bare = len(text) <= LONGEST_TEXT and _BARE.fullmatch(text.strip())
-        problem = f", got {_shown(text)} without a unit." if bare else f", got {_shown(text)}."
+        problem = f", got {shown(text)} without a unit." if bare else f", got {shown(text)}."
         raise QuantityError(wanted + problem)
     found = match[2]
     if found not in UNITS:
-        raise QuantityError(f"{wanted}, got {_shown(text)} with unknown unit '{found}'{did_you_mean(found, KINDS[UNITS[unit][0]])}.")
+        raise QuantityError(
+            f"{wanted}, got {shown(text)} with unknown unit '{found}'{did_you_mean(found, KINDS[UNITS[unit][0]])}."
+        )
     if UNITS[found][0] != UNITS[unit][0]:
-        raise QuantityError(f"{wanted}, got {_shown(text)}, which is of kind {UNITS[found][0]}.")
+        raise QuantityError(f"{wanted}, got {shown(text)}, which is of kind {UNITS[found][0]}.")
     value = float(match[1])
     if not math.isfinite(value):
-        raise QuantityError(f"{wanted}, finite, got {_shown(text)}.")
+        raise QuantityError(f"{wanted}, finite, got {shown(text)}.")
     return Quantity(value, found)
 
 

@@ -91,6 +91,7 @@ class Cell(Generic[P]):
         return inspect.getdoc(self.function) or ""
 
     def __call__(self, *args: P.args, **kwargs: P.kwargs) -> float:
+        """Be the plain function: floats in the declared units in, a float out."""
         return self.function(*args, **kwargs)
 
     def symbol(self, term: str) -> Symbol:
@@ -143,7 +144,7 @@ class Cell(Generic[P]):
         outside = self.outside(values)
         if outside is not None:
             raise OutsideValidity(outside)
-        result = float(self.function(**values))  # type: ignore[call-arg]
+        result = float(self.function(**values))  # type: ignore[arg-type]
         printed, terms = self.formula.evaluate(values)
         if not math.isfinite(result) or not math.isclose(result, printed, rel_tol=AGREEMENT, abs_tol=1e-300):
             raise DeclarationError(f"{self.name}: the printed formula gives {printed!r}, the function {result!r}.")
@@ -195,6 +196,7 @@ class Algorithm:
         return inspect.getdoc(self.function) or ""
 
     def __call__(self, *args: Any, **kwargs: Any) -> Any:
+        """Be the plain function."""
         return self.function(*args, **kwargs)
 
 
@@ -203,7 +205,11 @@ def _symbols(function: Callable[..., object]) -> tuple[dict[str, Symbol], Symbol
     found: dict[str, Symbol] = {}
     for name in (*inspect.signature(function).parameters, "return"):
         hint = hints.get(name)
-        symbol = next((a for a in get_args(hint)[1:] if isinstance(a, Symbol)), None) if get_origin(hint) is Annotated else None
+        symbol = (
+            next((a for a in get_args(hint)[1:] if isinstance(a, Symbol)), None)
+            if get_origin(hint) is Annotated
+            else None
+        )
         if symbol is None:
             raise DeclarationError(f"{function.__name__}: '{name}' must be annotated with a symbol.")
         found[name] = symbol
@@ -261,7 +267,9 @@ def cell(
         formula = read_formula(function)
         assigned = {line.term for line in formula.lines if line.term is not None}
         if assigned != set(terms or {}):
-            raise DeclarationError(f"{function.__name__}: terms {sorted(assigned)} and symbols {sorted(terms or {})} differ.")
+            raise DeclarationError(
+                f"{function.__name__}: terms {sorted(assigned)} and symbols {sorted(terms or {})} differ."
+            )
         for validity in valid_for:
             if isinstance(validity, Range) and validity.argument not in arguments:
                 raise DeclarationError(f"{function.__name__}: range of '{validity.argument}', which is no argument.")

@@ -11,7 +11,17 @@ from throughfault.errors import DeclarationError
 from throughfault.quantities import UNITS, Quantity
 from throughfault.sources import PROVENANCES
 
-__all__ = ["ABILITIES", "Check", "Fragment", "Limit", "Missing", "OpenPoint", "Outcome", "overall_verdict", "verdict_of"]
+__all__ = [
+    "ABILITIES",
+    "Check",
+    "Fragment",
+    "Limit",
+    "Missing",
+    "OpenPoint",
+    "Outcome",
+    "overall_verdict",
+    "verdict_of",
+]
 
 Ability = Literal["thermal", "dynamic"]
 Sense = Literal["at most", "at least"]
@@ -36,9 +46,19 @@ class Outcome:
 
     def __post_init__(self) -> None:
         if self.unit not in UNITS or self.provenance not in PROVENANCES:
-            raise DeclarationError(f"{self.id}: unit '{self.unit}' or provenance '{self.provenance}' is not in the lists.")
+            raise DeclarationError(
+                f"{self.id}: unit '{self.unit}' or provenance '{self.provenance}' is not in the lists."
+            )
         if (self.value is None) != (self.reason is not None):
             raise DeclarationError(f"{self.id}: a result has a value, or the reason why it is not assessed.")
+
+    def entry(self) -> dict[str, Any]:
+        """Return the outcome as it stands in the results file, under its id."""
+        made = asdict(self)
+        del made["id"]
+        if self.reason is None:
+            del made["reason"]
+        return made
 
     @classmethod
     def of_step(cls, step: Step, id: str | None = None, governing_case: str | None = None) -> Outcome:  # noqa: A002
@@ -197,7 +217,7 @@ class Fragment:
     def entry(self) -> dict[str, Any]:
         """Return the fragment as display data for the results file."""
         return {
-            "quantities": {o.id: {k: v for k, v in asdict(o).items() if k not in ("id",) and not (k == "reason" and v is None)} for o in self.quantities},
+            "quantities": {o.id: o.entry() for o in self.quantities},
             "steps": [s.entry() for s in self.steps],
             "checks": [c.entry() for c in self.checks],
             "cases": [dict(c) for c in self.cases],

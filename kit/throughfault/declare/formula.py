@@ -17,7 +17,19 @@ from dataclasses import dataclass
 
 from throughfault.errors import DeclarationError
 
-__all__ = ["Binary", "Call", "Choice", "Compare", "Formula", "Line", "Name", "Negative", "Node", "Number", "read_formula"]
+__all__ = [
+    "Binary",
+    "Call",
+    "Choice",
+    "Compare",
+    "Formula",
+    "Line",
+    "Name",
+    "Negative",
+    "Node",
+    "Number",
+    "read_formula",
+]
 
 FUNCTIONS: dict[str, Callable[..., float]] = {
     "sqrt": math.sqrt, "exp": math.exp, "log": math.log, "log10": math.log10, "sin": math.sin, "cos": math.cos,
@@ -37,8 +49,8 @@ COMPARE: dict[type[ast.cmpop], tuple[str, Callable[[float, float], bool]]] = {
     ast.Gt: (">", operator.gt),
     ast.GtE: (">=", operator.ge),
 }
-_BINARY_FUNCTION = {sign: function for sign, function in BINARY.values()}
-_COMPARE_FUNCTION = {sign: function for sign, function in COMPARE.values()}
+_BINARY_FUNCTION = dict(BINARY.values())
+_COMPARE_FUNCTION = dict(COMPARE.values())
 
 
 @dataclass(frozen=True, slots=True)
@@ -191,7 +203,11 @@ class _Reader:
         terms = value.elts if isinstance(value, ast.Tuple) else [value]
         if len(letters) != len(terms):
             return False
-        pairs = [(a.id, b.id) for a, b in zip(letters, terms, strict=True) if isinstance(a, ast.Name) and isinstance(b, ast.Name)]
+        pairs = [
+            (a.id, b.id)
+            for a, b in zip(letters, terms, strict=True)
+            if isinstance(a, ast.Name) and isinstance(b, ast.Name)
+        ]
         if len(pairs) != len(letters) or any(term not in self.arguments for _, term in pairs):
             return False
         self.letters.update({letter: self.letters[term] for letter, term in pairs})

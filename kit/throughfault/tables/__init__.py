@@ -24,7 +24,8 @@ from throughfault.sources import Source
 __all__ = ["Table", "table", "table_digests", "table_names"]
 
 REQUIRED = {
-    "title", "source", "where", "edition", "provenance", "confidence", "transcribed_by", "checked_by", "errata", "columns",
+    "title", "source", "where", "edition", "provenance", "confidence",
+    "transcribed_by", "checked_by", "errata", "columns",
 }  # fmt: skip
 
 

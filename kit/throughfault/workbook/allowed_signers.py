@@ -119,8 +119,7 @@ def matches(text: str, patterns: str) -> bool:
 def _parse_line(number: int, line: str) -> AllowedSigner:
     principals = PRINCIPALS.match(line)
     if principals is None:
-        message = "needs principals, options, key type and key"
-        raise ValueError(message)
+        raise ValueError("needs principals, options, key type and key")
     rest = line[principals.end() :]
     options: dict[str, str] = {}
     if not rest.startswith(KEY_TYPES):
@@ -141,8 +140,7 @@ def _parse_options(text: str) -> tuple[dict[str, str], str]:
     while True:
         match = OPTION.match(text, position)
         if match is None:
-            message = f"options must be name=\"value\" with commas between, got {text[position:position + 40]!r}"
-            raise ValueError(message)
+            raise ValueError(f"options must be name=\"value\" with commas between, got {text[position:position + 40]!r}")
         name, value = match[1].lower(), match[2]
         _check_option(name, value, options)
         options[name] = value.replace('\\"', '"')
@@ -153,14 +151,11 @@ def _parse_options(text: str) -> tuple[dict[str, str], str]:
 
 def _check_option(name: str, value: str | None, options: dict[str, str]) -> None:
     if name == "cert-authority":
-        message = "cert-authority is not supported; give the signer's own Ed25519 key"
-        raise ValueError(message)
+        raise ValueError("cert-authority is not supported; give the signer's own Ed25519 key")
     if name not in {"namespaces", "valid-after", "valid-before"}:
-        message = f"unknown option {name!r}; known are namespaces, valid-after, valid-before"
-        raise ValueError(message)
+        raise ValueError(f"unknown option {name!r}; known are namespaces, valid-after, valid-before")
     if not value or name in options:
-        message = f"option {name} must be given once, with a value in quotation marks"
-        raise ValueError(message)
+        raise ValueError(f"option {name} must be given once, with a value in quotation marks")
 
 
 def _parse_key(text: str) -> bytes:
@@ -168,12 +163,10 @@ def _parse_key(text: str) -> bytes:
     try:
         kind, blob = fields[0], base64.b64decode(fields[1], validate=True)
     except (IndexError, binascii.Error):
-        message = "the key must be a key type and base64"
-        raise ValueError(message) from None
+        raise ValueError("the key must be a key type and base64") from None
     length = int.from_bytes(blob[:4], "big")
     if blob[4 : 4 + length] != kind.encode():
-        message = f"the key is not of the type {kind!r} that stands before it"
-        raise ValueError(message)
+        raise ValueError(f"the key is not of the type {kind!r} that stands before it")
     return blob
 
 
@@ -185,11 +178,9 @@ def _parse_time(options: dict[str, str], name: str) -> datetime | None:
     digits = text.removesuffix("Z")
     pattern = {8: "%Y%m%d", 12: "%Y%m%d%H%M", 14: "%Y%m%d%H%M%S"}.get(len(digits))
     if pattern is None or not (digits.isascii() and digits.isdigit()):
-        message = f"{name} must be YYYYMMDD[Z] or YYYYMMDDHHMM[SS][Z], got {text!r}"
-        raise ValueError(message)
+        raise ValueError(f"{name} must be YYYYMMDD[Z] or YYYYMMDDHHMM[SS][Z], got {text!r}")
     try:
         moment = datetime.strptime(digits, pattern)  # noqa: DTZ007 - the time zone follows
         return moment.replace(tzinfo=UTC) if text.endswith("Z") else moment.astimezone()
     except (ValueError, OverflowError, OSError):
-        message = f"{name} is no date and time, got {text!r}"
-        raise ValueError(message) from None
+        raise ValueError(f"{name} is no date and time, got {text!r}") from None

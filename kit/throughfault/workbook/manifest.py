@@ -246,8 +246,7 @@ def parse_sums(text: str) -> dict[str, str]:
     for number, line in enumerate(text.removesuffix("\n").split("\n"), 1):
         match = re.fullmatch(r"([0-9a-f]{64})  (.+)", line)
         if match is None or match[2] in found:
-            message = f"line {number} is not a new 'sha256  path'"
-            raise ValueError(message)
+            raise ValueError(f"line {number} is not a new 'sha256  path'")
         found[match[2]] = match[1]
     return found
 

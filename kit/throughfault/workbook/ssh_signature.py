@@ -45,15 +45,13 @@ class SshSignature:
     def check(self, message: bytes, namespace: str) -> None:
         """Raise ValueError unless the embedded key signed the message under the namespace."""
         if self.namespace != namespace:
-            message_ = f"is made for the namespace {self.namespace!r} and not for {namespace!r}"
-            raise ValueError(message_)
+            raise ValueError(f"is made for the namespace {self.namespace!r} and not for {namespace!r}")
         try:
             Ed25519PublicKey.from_public_bytes(_key_bytes(self.key)).verify(
                 self.value, _to_be_signed(message, namespace.encode(), self.hash_name)
             )
         except InvalidSignature:
-            sentence = "is no signature of this statement by the key it holds"
-            raise ValueError(sentence) from None
+            raise ValueError("is no signature of this statement by the key it holds") from None
 
 
 def sign_bytes(message: bytes, key: Ed25519PrivateKey, namespace: str) -> str:
@@ -81,11 +79,9 @@ def parse_signature(data: bytes) -> SshSignature:
     inner.end()
     _key_bytes(key)
     if reserved or hash_name not in HASHES:
-        message = "uses a hash or an extension that the format does not define"
-        raise ValueError(message)
-    if len(value) != 64:  # noqa: PLR2004 - RFC 8032
-        message = "does not hold the 64 bytes of an Ed25519 signature"
-        raise ValueError(message)
+        raise ValueError("uses a hash or an extension that the format does not define")
+    if len(value) != 64:
+        raise ValueError("does not hold the 64 bytes of an Ed25519 signature")
     return SshSignature(key, namespace.decode("utf-8", "backslashreplace"), hash_name, value)
 
 
@@ -152,13 +148,11 @@ def _to_be_signed(message: bytes, namespace: bytes, hash_name: bytes) -> bytes:
 def _unarmour(data: bytes) -> bytes:
     match = re.fullmatch(rf"{BEGIN}\n((?:[A-Za-z0-9+/=]+\n)+){END}\n?", data.decode("ascii", "replace"))
     if match is None:
-        message = "is no armoured SSH signature"
-        raise ValueError(message)
+        raise ValueError("is no armoured SSH signature")
     try:
         return base64.b64decode(match[1].replace("\n", ""), validate=True)
     except binascii.Error:
-        message = "holds no base64 between its armour lines"
-        raise ValueError(message) from None
+        raise ValueError("holds no base64 between its armour lines") from None
 
 
 def _key_bytes(blob: bytes) -> bytes:
@@ -166,9 +160,8 @@ def _key_bytes(blob: bytes) -> bytes:
     reader.literal(_string(KEY_TYPE), "is not made with an Ed25519 key")
     key = reader.string()
     reader.end()
-    if len(key) != 32:  # noqa: PLR2004 - RFC 8032
-        message = "does not hold the 32 bytes of an Ed25519 key"
-        raise ValueError(message)
+    if len(key) != 32:
+        raise ValueError("does not hold the 32 bytes of an Ed25519 key")
     return key
 
 
@@ -190,12 +183,10 @@ class _Reader:
     def string(self) -> bytes:
         length = int.from_bytes(self.data[:4], "big") + 4
         if len(self.data) < max(length, 4):
-            message = "ends too early"
-            raise ValueError(message)
+            raise ValueError("ends too early")
         found, self.data = self.data[4:length], self.data[length:]
         return found
 
     def end(self) -> None:
         if self.data:
-            message = "holds more than one signature"
-            raise ValueError(message)
+            raise ValueError("holds more than one signature")

@@ -30,11 +30,9 @@ def parse_strict(data: bytes) -> object:
             parse_float=_finite,
         )
     except RecursionError:
-        message = "is nested too deeply to be read"
-        raise ValueError(message) from None
+        raise ValueError("is nested too deeply to be read") from None
     except ValueError as error:  # includes UnicodeDecodeError and JSONDecodeError
-        message = f"is not strict JSON in UTF-8: {error}"
-        raise ValueError(message) from None
+        raise ValueError(f"is not strict JSON in UTF-8: {error}") from None
 
 
 def read_bounded(path: Path, limit: int) -> bytes:
@@ -42,8 +40,7 @@ def read_bounded(path: Path, limit: int) -> bytes:
     with path.open("rb") as stream:
         data = stream.read(limit + 1)
     if len(data) > limit:
-        message = f"is larger than the {limit} bytes allowed"
-        raise ValueError(message)
+        raise ValueError(f"is larger than the {limit} bytes allowed")
     return data
 
 
@@ -59,22 +56,19 @@ def _unique_keys(pairs: list[tuple[str, object]]) -> dict[str, object]:
     found: dict[str, object] = {}
     for key, value in pairs:
         if key in found:
-            message = f"the key {key!r} stands twice"
-            raise ValueError(message)
+            raise ValueError(f"the key {key!r} stands twice")
         found[key] = value
     return found
 
 
 def _refuse_constant(text: str) -> NoReturn:
-    message = f"{text} is not a JSON number"
-    raise ValueError(message)
+    raise ValueError(f"{text} is not a JSON number")
 
 
 def _finite(text: str) -> float:
     number = float(text)
     if not math.isfinite(number):
-        message = f"{text} is beyond the range of a double"
-        raise ValueError(message)
+        raise ValueError(f"{text} is beyond the range of a double")
     return number
 
 
