@@ -163,8 +163,8 @@ def shown(text: object) -> str:
         return "a table" if isinstance(text, dict) else "an array"
     if isinstance(text, int) and abs(text) >= 10**LONGEST_TEXT:
         return f"a whole number of more than {LONGEST_TEXT} digits"
-    shown = repr(text)
-    return shown if len(shown) <= LONGEST_TEXT else f"{shown[:40]}... ({len(shown)} characters)"
+    whole = repr(text)
+    return whole if len(whole) <= LONGEST_TEXT else f"{whole[:40]}... ({len(whole)} characters)"
 
 
 def parse(text: object, unit: str) -> Quantity:
