@@ -77,6 +77,9 @@ UNITS: dict[str, tuple[str, str]] = {
     "A^2 s/mm^4": ("heat integral", "ampere ** 2 * second / millimeter ** 4"),
     "W s/(kg K)": ("specific heat", "watt * second / kilogram / delta_degree_Celsius"),
     "W/kg": ("loss per mass", "watt / kilogram"),
+    "W s/(kg K^2)": ("slope of specific heat", "watt * second / kilogram / delta_degree_Celsius ** 2"),
+    "uohm m": ("resistivity", "microohm * meter"),
+    "kg/m^3": ("density", "kilogram / meter ** 3"),
 }
 
 #: kind -> the units it may be written in
