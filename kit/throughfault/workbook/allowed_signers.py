@@ -9,6 +9,7 @@ from __future__ import annotations
 import base64
 import binascii
 import re
+from collections.abc import Sequence
 from dataclasses import dataclass
 from datetime import UTC, datetime
 from pathlib import Path
@@ -83,15 +84,14 @@ def read_allowed_signers(path: Path) -> tuple[AllowedSigner, ...]:
 
 
 def identify(
-    allowed: tuple[AllowedSigner, ...], signer: str, key: bytes, namespace: str, moment: datetime
+    allowed: Sequence[AllowedSigner], signer: str, key: bytes, namespace: str, moment: datetime
 ) -> Identification:
     """Say whether one of the lines lets this signer sign with this key in the namespace at the moment."""
     named = [line for line in allowed if matches(signer, line.principals)]
     if not named:
         return Identification(identified=False, reason=f"no line of the signers file names {signer!r}")
     reasons = [
-        line.refusal(namespace, moment) if line.key == key else f"line {line.line} gives another key"
-        for line in named
+        line.refusal(namespace, moment) if line.key == key else f"line {line.line} gives another key" for line in named
     ]
     for line, reason in zip(named, reasons, strict=True):
         if reason is None:
@@ -140,7 +140,9 @@ def _parse_options(text: str) -> tuple[dict[str, str], str]:
     while True:
         match = OPTION.match(text, position)
         if match is None:
-            raise ValueError(f"options must be name=\"value\" with commas between, got {text[position:position + 40]!r}")
+            raise ValueError(
+                f'options must be name="value" with commas between, got {text[position:][:40]!r}'
+            )
         name, value = match[1].lower(), match[2]
         _check_option(name, value, options)
         options[name] = value.replace('\\"', '"')

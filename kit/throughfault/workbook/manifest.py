@@ -13,21 +13,23 @@ from datetime import UTC, datetime
 from importlib.metadata import PackageNotFoundError, version
 from importlib.resources import files
 from pathlib import Path
-from typing import Annotated, Literal
 
 import rfc8785
-from pydantic import BaseModel, ConfigDict, Field
 
 from throughfault.errors import RecordError
+from throughfault.workbook.documents import (
+    MANIFEST,
+    REQUIRED,
+    RESULTS,
+    RESULTS_LIMIT,
+    SIGNATURES,
+    SUMS,
+    ResultsFace,
+)
 from throughfault.workbook.strict_json import read_bounded, read_model
 from throughfault.workbook.tree import Faults, Tree, collision_key, path_fault, scan, sha256_bytes, write_durably
 
 __all__ = [
-    "MANIFEST",
-    "RESULTS",
-    "SUMS",
-    "Manifest",
-    "ResultsFace",
     "inputs_sha256",
     "parse_sums",
     "path_faults",
@@ -37,14 +39,6 @@ __all__ = [
     "write_manifest",
 ]
 
-MANIFEST = "manifest.json"
-RESULTS = "results.json"
-SUMS = "SHA256SUMS"
-SIGNATURES = "signatures/"
-REQUIRED = ("record.html", "workbook.ipynb", RESULTS)
-MANIFEST_LIMIT = 1 << 20  # bytes; a larger one is refused unread
-RESULTS_LIMIT = 1 << 26
-TIME_PATTERN = r"^\d{4}-\d\d-\d\dT\d\d:\d\d:\d\dZ$"
 DEPENDENCIES = (
     "numpy",
     "scipy",
@@ -58,95 +52,8 @@ DEPENDENCIES = (
     "math-core",
 )
 
-Sha256 = Annotated[str, Field(pattern=r"^[0-9a-f]{64}$")]
 
-
-class _Face(BaseModel):
-    """A part of a document that is read strictly; keys that this kit does not know are left alone."""
-
-    model_config = ConfigDict(strict=True, frozen=True, extra="ignore")
-
-
-class FileEntry(_Face):
-    """One file of the record."""
-
-    path: str
-    size: Annotated[int, Field(ge=0)]  # bytes
-    sha256: Sha256
-
-
-class KitFace(_Face):
-    """The kit that made the record."""
-
-    version: str
-
-
-class TemplateFace(_Face):
-    """The notebook template that was run."""
-
-    name: str
-    sha256: Sha256
-
-
-class PlatformFace(_Face):
-    """The machine's kind, never its name."""
-
-    system: str
-    machine: str
-
-
-class Manifest(_Face):
-    """The content of `manifest.json`."""
-
-    format: Literal["throughfault-manifest/1"]
-    created: Annotated[str, Field(pattern=TIME_PATTERN)]  # UTC, the record's only clock time
-    files: list[FileEntry]
-    kit: KitFace
-    dependencies: dict[str, str]
-    python: str
-    platform: PlatformFace
-    template: TemplateFace
-    tables: dict[str, Sha256]
-    inputs_sha256: Sha256
-
-
-class UnitFace(_Face):
-    """Which unit was reviewed."""
-
-    tag: str
-    revision: str
-
-
-class CheckFace(_Face):
-    """What a signature depends on in a check."""
-
-    id: str
-    verdict: Literal["within", "exceeds", "not assessed"]
-    limit_provenance: str | None = None
-
-
-class ResultsFace(_Face):
-    """The keys of `results.json` that the manifest and the signatures lean on."""
-
-    unit: UnitFace
-    kit: KitFace
-    template: TemplateFace
-    inputs_sha256: Sha256
-    checks: list[CheckFace]
-
-    @property
-    def unconfirmed(self) -> tuple[str, ...]:
-        """Ids of the checks that decide by a limit from memory."""
-        return tuple(
-            check.id
-            for check in self.checks
-            if check.verdict != "not assessed" and check.limit_provenance == "recalled"
-        )
-
-
-def write_manifest(
-    record: Path, *, tables: Mapping[str, str] | None = None, created: datetime | None = None
-) -> str:
+def write_manifest(record: Path, *, tables: Mapping[str, str] | None = None, created: datetime | None = None) -> str:
     """Write `manifest.json` and `SHA256SUMS` of a finished, unsigned record folder.
 
     Parameters

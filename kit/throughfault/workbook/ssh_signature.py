@@ -57,10 +57,18 @@ class SshSignature:
 def sign_bytes(message: bytes, key: Ed25519PrivateKey, namespace: str) -> str:
     """Return the armoured signature of a message under a namespace."""
     value = key.sign(_to_be_signed(message, namespace.encode(), b"sha512"))
-    blob = MAGIC + struct.pack(">I", 1) + b"".join(
-        _string(part)
-        for part in (
-            public_blob(key.public_key()), namespace.encode(), b"", b"sha512", _string(KEY_TYPE) + _string(value)
+    blob = (
+        MAGIC
+        + struct.pack(">I", 1)
+        + b"".join(
+            _string(part)
+            for part in (
+                public_blob(key.public_key()),
+                namespace.encode(),
+                b"",
+                b"sha512",
+                _string(KEY_TYPE) + _string(value),
+            )
         )
     )
     text = base64.b64encode(blob).decode()

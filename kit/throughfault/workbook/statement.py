@@ -13,7 +13,7 @@ from typing import Annotated, Literal
 import rfc8785
 from pydantic import AfterValidator, BaseModel, ConfigDict, Field
 
-from throughfault.workbook.manifest import SIGNATURES, TIME_PATTERN, Sha256
+from throughfault.workbook.documents import SIGNATURES, TIME_PATTERN, Sha256
 
 __all__ = ["DECISIONS", "ROLES", "Earlier", "Statement", "file_stem", "namespace", "parse_name", "text_fault"]
 
@@ -37,7 +37,7 @@ def text_fault(name: str, text: str) -> str | None:
         return f"{name} must hold printable characters only"
     if name == "signer" and (not text or text != text.strip() or text[0] in "#-" or set(text) & set(',"*?!\\')):
         return (
-            "signer must be a name without , \" * ? ! \\ in it, # or - before it or space around it"
+            'signer must be a name without , " * ? ! \\ in it, # or - before it or space around it'
             f" (an allowed_signers file must be able to name it), got {text!r}"
         )
     return None

@@ -40,7 +40,7 @@ class Faults:
     @property
     def lines(self) -> tuple[str, ...]:
         """One sentence for each fault, safe to print."""
-        return tuple(f"{shown(path)}: {sentence}" for path, sentence in self.found)
+        return tuple(f"{shown(path)}: {shown(sentence)}" for path, sentence in self.found)
 
 
 @dataclass
