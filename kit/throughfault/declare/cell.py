@@ -144,7 +144,7 @@ class Cell(Generic[P]):
         outside = self.outside(values)
         if outside is not None:
             raise OutsideValidity(outside)
-        result = float(self.function(**values))  # type: ignore[arg-type]
+        result = float(self.function(**values))  # type: ignore[arg-type, call-arg]
         printed, terms = self.formula.evaluate(values)
         if not math.isfinite(result) or not math.isclose(result, printed, rel_tol=AGREEMENT, abs_tol=1e-300):
             raise DeclarationError(f"{self.name}: the printed formula gives {printed!r}, the function {result!r}.")

@@ -1,0 +1,1 @@
+"""Assessment: a unit file's data taken through the cells to findings."""
