@@ -53,7 +53,8 @@ class Cases:
     frequency
         [case] Hz.
     source_z1, source_z2, source_z0
-        [case, winding] source at the terminal, ohm; ``z1`` infinite: no infeed, zero: ideal; ``z0`` infinite: unearthed.
+        [case, winding] source at the terminal, ohm; ``z1`` infinite: no infeed, zero: ideal; ``z0`` infinite:
+        unearthed.
     neutral
         [case, winding] neutral to earth, ohm; infinite: isolated.  Read where a winding has a neutral; in one phase
         the return end is always joined.
@@ -123,7 +124,7 @@ class Cases:
         }  # fmt: skip
         cases = cls(**_broadcast(given, len(transformer.windings)))
         if prefault is None:
-            phase = cases._at(cases.voltage) / np.sqrt(transformer.phases)
+            phase = cases.at_fault(cases.voltage) / np.sqrt(transformer.phases)
             cases = cls(**{**cases._columns(), "prefault": phase})
         if faults := _faults(transformer, cases):
             raise NetworkError("; ".join(faults))
@@ -140,7 +141,8 @@ class Cases:
     def _columns(self) -> dict[str, Any]:
         return {field.name: getattr(self, field.name) for field in fields(self)}
 
-    def _at(self, column: Floats | Complexes) -> Any:
+    def at_fault(self, column: Floats | Complexes) -> Any:
+        """Return the entry of each case's own faulted winding, [case], from [case, winding]."""
         return column[np.arange(len(self)), self.at]
 
 
@@ -179,7 +181,7 @@ def _faults(transformer: Transformer, cases: Cases) -> list[str]:
     if outside.any():
         return [f"at of case {outside.argmax()} must be a winding from 0 to {windings - 1}, got {cases.at[outside][0]}"]
     pairs = ~np.eye(windings, dtype=bool)
-    source, closing = cases._at(cases.source_z1), cases.fault == OUT_OF_PHASE
+    source, closing = cases.at_fault(cases.source_z1), cases.fault == OUT_OF_PHASE
     checks = {
         f"fault must be one of {', '.join(kinds)}": ~np.isin(cases.fault, kinds),
         "voltage must be finite and positive (V)": ~(np.isfinite(cases.voltage) & (cases.voltage > 0)).all(1),
@@ -199,5 +201,6 @@ def _faults(transformer: Transformer, cases: Cases) -> list[str]:
 
 
 def _skew(z: Complexes, pairs: NDArray[np.bool_]) -> NDArray[np.bool_]:
-    same: NDArray[np.bool_] = np.isclose(z, z.transpose(0, 2, 1), rtol=1e-9, atol=0)[:, pairs].all(1)
-    return ~same
+    unlike: NDArray[np.bool_] = np.asarray(np.abs(z - z.transpose(0, 2, 1)) > 1e-9 * np.abs(z))
+    skew: NDArray[np.bool_] = np.any(unlike[:, pairs], axis=1)
+    return skew

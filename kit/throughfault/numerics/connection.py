@@ -99,8 +99,8 @@ class Transformer:
             return f"{name}: the common part of an autotransformer must stand second, after Y or I, with clock number 0"
         steps = (0, 6) if self.phases == 1 else tuple(_TURN)
         if index and self._turn(index) not in steps:
-            return f"{name}: clock number {winding.clock} cannot be wound with {winding.connection} after " \
-                   f"{self.windings[0].connection}"
+            letters = f"{winding.connection} after {self.windings[0].connection}"
+            return f"{name}: clock number {winding.clock} cannot be wound with {letters}"
         if index == 0 and winding.clock:
             return f"{name}: the clock number of the first winding must be 0, got {winding.clock}"
         return ""

@@ -139,8 +139,8 @@ def port_rule(kind: str, phases: int) -> Floats:
 def port_witness(kind: str, phases: int) -> Floats:
     """Return the combination of port currents, [phase], that can flow only if the fault has a path."""
     if phases == 1 or kind in {OUT_OF_PHASE, LINE_EARTH, THREE_PHASE}:
-        return np.eye(phases)[0]
-    return np.array([0.0, 1.0, 0.0] if kind == LINE_LINE else [0.0, 1.0, 1.0])
+        return np.array([1.0, 0.0, 0.0][:phases])
+    return np.array([0.0, 1.0, 0.0 if kind == LINE_LINE else 1.0])
 
 
 def allowed_currents(

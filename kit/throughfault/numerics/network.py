@@ -26,6 +26,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from throughfault.errors import NetworkError
+from throughfault.numerics.branch import TURN, branch_emf, branch_impedance
 from throughfault.numerics.case import (
     LINE_EARTH,
     LINE_LINE,
@@ -37,7 +38,7 @@ from throughfault.numerics.case import (
     Floats,
 )
 from throughfault.numerics.connection import Transformer
-from throughfault.numerics.impedance import coil_drops, coil_voltages
+from throughfault.numerics.impedance import coil_voltages
 from throughfault.numerics.loops import (
     ROUNDING,
     Layout,
@@ -51,7 +52,6 @@ from throughfault.numerics.loops import (
 __all__ = ["Group", "Solution", "groups", "observe", "solve", "split"]
 
 CHUNK = 1000
-_A = np.exp(2j * np.pi / 3)
 INFINITE = complex(np.inf)
 
 
@@ -155,17 +155,18 @@ def groups(transformer: Transformer, cases: Cases) -> Iterator[Group]:
 def _layouts(transformer: Transformer, cases: Cases) -> Iterator[tuple[Layout, str, NDArray[np.intp]]]:
     infeed = np.isfinite(cases.source_z1)
     neutral = np.array(transformer.neutrals) & (np.isfinite(cases.neutral) | (transformer.phases == 1))
-    magnetising = np.isfinite(cases.magnetising).any(1) & (transformer.phases == 3)
+    magnetising = np.isfinite(cases.magnetising).any(1, keepdims=True) & (transformer.phases == 3)
     kinds, kind = np.unique(cases.fault, return_inverse=True)
-    parts = [infeed, infeed & np.isfinite(cases.source_z0), neutral, magnetising[:, None]]
+    parts = [infeed, infeed & np.isfinite(cases.source_z0), neutral, magnetising]
     key = np.concatenate([*parts, kind[:, None], cases.at[:, None]], axis=1).astype(np.intp)
     patterns, group = np.unique(key, axis=0, return_inverse=True)
     w = len(transformer.windings)
     for number, pattern in enumerate(patterns):
         flags = [tuple(bool(flag) for flag in pattern[i * w : (i + 1) * w]) for i in range(3)]
         name = str(kinds[pattern[-2]])
+        members: NDArray[np.intp] = np.flatnonzero(np.asarray(group == number))
         layout = Layout(flags[0], flags[1], flags[2], int(pattern[-1]), name == OUT_OF_PHASE, bool(pattern[-3]))
-        yield layout, name, np.flatnonzero(group == number)
+        yield layout, name, members
 
 
 def _chunk_groups(
@@ -176,7 +177,7 @@ def _chunk_groups(
     rule = port_rule(kind, network.phases)
     bases = allowed_currents(network, sets, coil_sets, rule)
     frees = allowed_currents(network, sets, coil_sets, rule[:0]) if len(rule) else bases
-    impedance, emf = _impedance(transformer, network, cases), _emf(network, kind, cases)
+    impedance, emf = branch_impedance(transformer, network, cases), branch_emf(network, kind, cases)
     for members, basis in bases:
         for free_members, free in frees:
             both = np.intersect1d(members, free_members)
@@ -187,65 +188,6 @@ def _chunk_groups(
             yield Group(
                 network, kind, rows[inside], cases[inside], basis[own], free[other], impedance[inside], emf[inside]
             )
-
-
-def _impedance(transformer: Transformer, network: Network, cases: Cases) -> Complexes:
-    """Branch impedance of every case, [case, branch, branch] ohm."""
-    z = np.zeros((len(cases), *(network.loops.shape[0],) * 2), np.complex128)
-    _set_coils(z, transformer, network, cases)
-    for w, rows in network.source.items():
-        earthed = np.where(np.isinf(cases.source_z0[:, w]), cases.source_z1[:, w], cases.source_z0[:, w])
-        block = _source_block(cases.source_z1[:, w], cases.source_z2[:, w], earthed, network.phases)
-        z[:, rows[0] : rows[-1] + 1, rows[0] : rows[-1] + 1] = block
-    for w, row in network.neutral.items():
-        z[:, row, row] = cases.neutral[:, w] if network.phases == 3 else 0.0
-    if network.port[0] not in {row for rows in network.source.values() for row in rows}:
-        port = slice(network.port[0], network.port[-1] + 1)
-        z[:, port, port] = _fault_block(cases, network.phases)
-    return z
-
-
-def _set_coils(z: Complexes, transformer: Transformer, network: Network, cases: Cases) -> None:
-    """Fill in the coils: (Z0 + 2 Z1)/3 on one limb, (Z0 - Z1)/3 between limbs."""
-    phases, coils = network.phases, network.coils
-    voltage = coil_voltages(transformer, cases.voltage)
-    scale = (voltage[:, :, None] * voltage[:, None, :]) / (cases.base_power / phases)[:, None, None]
-    drop1, drop0 = coil_drops(transformer, cases)
-    one, zero = drop1[:, :coils, :coils] * scale, drop0[:, :coils, :coils] * scale
-    mutual = (zero - one) / 3 if phases == 3 else np.zeros_like(one)
-    block = np.einsum("ncd,pq->ncpdq", one, np.eye(phases)) + np.einsum("ncd,pq->ncpdq", mutual, np.ones((phases,) * 2))
-    z[:, : coils * phases, : coils * phases] = block.reshape(len(cases), coils * phases, coils * phases)
-    if network.magnetising:
-        unit = voltage * (cases.voltage[:, 0] / (cases.base_power / phases))[:, None]
-        column = np.repeat(drop0[:, :coils, coils] * unit, phases, axis=1)
-        z[:, : coils * phases, -1] = z[:, -1, : coils * phases] = column
-
-
-def _source_block(z1: Complexes, z2: Complexes, z0: Complexes, phases: int) -> Complexes:
-    if phases == 1:
-        return z1[:, None, None]
-    turn = _A ** (np.arange(3)[:, None] - np.arange(3))
-    block: Complexes = (z0[:, None, None] + z1[:, None, None] / turn + z2[:, None, None] * turn) / 3
-    return block
-
-
-def _fault_block(cases: Cases, phases: int) -> Complexes:
-    pattern = {
-        THREE_PHASE: np.eye(3),
-        LINE_EARTH: np.diag([1.0, 0, 0]),
-        LINE_LINE: np.diag([0, 0.5, 0.5]),
-        LINE_LINE_EARTH: np.outer([0.0, 1, 1], [0.0, 1, 1]),
-    }
-    shape = np.ones((1, 1)) if phases == 1 else pattern[str(cases.fault[0])]
-    block: Complexes = cases.fault_impedance[:, None, None] * shape
-    return block
-
-
-def _emf(network: Network, kind: str, cases: Cases) -> Complexes:
-    emf = np.zeros((len(cases), network.loops.shape[0]), np.complex128)
-    step = 1 - np.exp(1j * cases.step) if kind == OUT_OF_PHASE else np.ones(len(cases))
-    emf[:, network.port] = (cases.prefault * step)[:, None] * _A ** -np.arange(network.phases)
-    return emf
 
 
 def _currents(group: Group) -> Complexes:
@@ -271,17 +213,18 @@ def _port_admittance(group: Group) -> Complexes:
 
 def _solved(matrix: Complexes, right: Complexes, group: Group) -> Complexes:
     try:
-        return np.linalg.solve(matrix, right)
+        solved = np.asarray(np.linalg.solve(matrix, right), np.complex128)
     except np.linalg.LinAlgError as error:
         raise NetworkError(
             f"case {group.rows[0]} or one like it ({group.kind}) has a path without impedance through the fault; "
             "give sources, windings or the fault an impedance (ohm)"
         ) from error
+    return solved
 
 
 def _has_path(group: Group) -> NDArray[np.bool_]:
     witness = port_witness(group.kind, group.network.phases) @ group.basis[:, group.network.port, :]
-    scale = group.cases.voltage[np.arange(len(group.rows)), group.cases.at]
+    scale = group.cases.at_fault(group.cases.voltage)
     exists: NDArray[np.bool_] = np.abs(witness).max(1, initial=0.0) * scale > ROUNDING
     return exists
 
@@ -290,7 +233,7 @@ def _sequence_impedance(admittance: Complexes) -> tuple[Complexes, Complexes, Co
     """Positive-, negative- and zero-sequence impedance of a port from the first row of its circulant admittance."""
     row = admittance[:, 0, :]
     phases = np.arange(row.shape[1])
-    y1, y2, y0 = row @ _A**-phases, row @ _A**phases, row.sum(1)
+    y1, y2, y0 = row @ TURN**-phases, row @ TURN**phases, row.sum(1)
     if len(phases) == 1:
         y0 = np.zeros_like(y1)
     y0[np.abs(y0) < ROUNDING * np.abs(y1)] = 0.0

@@ -137,8 +137,8 @@ def _modes(transformer: Transformer, group: Group) -> tuple[Complexes, Floats]:
     try:
         lower = np.linalg.cholesky(_symmetric(reduced.real + reduced.imag))
     except np.linalg.LinAlgError as error:
-        message = f"case {group.rows[0]} or one like it ({group.kind}) must be passive: resistances or reactances given " \
-                  "for its winding pairs make the stored energy negative"
+        what = "must be passive: its winding pairs' resistances or reactances make the energy negative"
+        message = f"case {group.rows[0]} or one like it ({group.kind}) {what}"
         raise NetworkError(message) from error
     inverse = np.linalg.inv(lower)
     share, vector = np.linalg.eigh(_symmetric(inverse @ reduced.real @ inverse.transpose(0, 2, 1)))
@@ -211,7 +211,7 @@ def _cycle_peaks(wave: Transient, period: Floats, cycle: int) -> Floats:
 
 
 def _derivatives(wave: Transient, time: Floats) -> tuple[Complexes, Complexes, Complexes]:
-    """h and its first two derivatives at [case, row] s."""
+    """Return h and its first two derivatives at [case, row] s."""
     turn = 1j * wave.omega[:, None]
     steady = wave.phasor * np.exp(turn * time)
     decay = wave.coefficient * np.exp(-wave.rate[:, None, :] * time[:, :, None])
@@ -221,5 +221,3 @@ def _derivatives(wave: Transient, time: Floats) -> tuple[Complexes, Complexes, C
         turn * steady + (rate * decay).sum(2),
         turn**2 * steady - (rate**2 * decay).sum(2),
     )
-
-
