@@ -1,0 +1,139 @@
+"""Faults of a unit file in the kit's words."""
+
+from __future__ import annotations
+
+import types
+from collections.abc import Iterable, Iterator
+from dataclasses import dataclass
+from typing import Any, Union, get_args, get_origin
+
+from pydantic import ValidationError
+from pydantic.fields import FieldInfo
+
+from throughfault.errors import did_you_mean
+from throughfault.quantities import shown
+from throughfault.workbook.inputs.leaves import Leaf
+from throughfault.workbook.inputs.lines import KeyPath, line_of, path_text
+from throughfault.workbook.inputs.model import UnitFile
+from throughfault.workbook.inputs.section import Section
+
+__all__ = ["Fault", "faults_of", "report"]
+
+#: what stands in the model but not in the file
+_INNER = ("system", "terminals")
+
+
+@dataclass(frozen=True, slots=True)
+class Fault:
+    """One fault: where, and what is wrong there."""
+
+    path: KeyPath
+    text: str
+
+
+def report(name: str, faults: Iterable[Fault], places: dict[KeyPath, list[int]]) -> list[str]:
+    """Write the faults in the order of the file, each with file, line and key path."""
+    placed = [(line_of(fault.path, places), path_text(fault.path), fault.text) for fault in faults]
+    placed.sort(key=lambda p: p[0] or 0)
+    return [f"{name}: {f'[line {line}] ' if line else ''}{path}: {text}" for line, path, text in placed]
+
+
+def faults_of(error: ValidationError) -> Iterator[Fault]:
+    """Translate what the model found."""
+    for entry in error.errors(include_url=False):
+        location = tuple(entry["loc"])
+        path = _file_path(location)
+        if entry["type"] == "extra_forbidden":
+            yield Fault(path, _unknown(location))
+        elif location[-1:] == ("[key]",):
+            yield Fault(path[:-1], f"its name {_lowered(str(entry['msg']))}")
+        elif entry["type"] == "missing":
+            yield Fault(path, f"is missing; it must be {_wanted(location)}{_source(location)}.")
+        elif entry["type"] == "refused":
+            yield Fault(path, f"{str(entry['msg']).removesuffix('.')}{_source(location)}.")
+        elif entry["type"] == "too_short":
+            yield Fault(path, f"must have at least {entry['ctx']['min_length']} entries, got {entry['ctx']['actual_length']}.")
+        else:  # a table or an array of tables was wanted
+            yield Fault(path, f"must be {_wanted(location)}, got {shown(entry['input'])}.")
+
+
+def _lowered(text: str) -> str:
+    return text[:1].lower() + text[1:]
+
+
+def _file_path(location: KeyPath) -> KeyPath:
+    return (location[0], *location[2:]) if location[:2] == _INNER and len(location) > 2 else location
+
+
+def _unknown(location: KeyPath) -> str:
+    section = _section(location[:-1])
+    known = [name for name in section.model_fields if name != "terminals"] if section else []
+    name = str(location[-1])
+    near = did_you_mean(name, known) if len(name) <= 64 else ""
+    return f"is not a known key{near or '; known here: ' + ', '.join(known)}."
+
+
+def _wanted(location: KeyPath) -> str:
+    leaf, field = _leaf(location), _field(location)
+    if leaf is not None:
+        return leaf.wanted
+    if field is not None and get_origin(_plain(field.annotation)) is tuple and not isinstance(location[-1], int):
+        return f"an array of tables [[{path_text(_file_path(location))}]]"
+    return "a table"
+
+
+def _source(location: KeyPath) -> str:
+    field = _field(location)
+    extra = field.json_schema_extra if field is not None else None
+    source = extra.get("source") if isinstance(extra, dict) else ""
+    return f"; source: {source}" if source else ""
+
+
+def _leaf(location: KeyPath) -> Leaf | None:
+    field = _field(location)
+    if field is None:
+        return None
+    annotation: Any = field.annotation
+    candidates = [*field.metadata, *_metadata(annotation)]
+    return next((item for item in candidates if isinstance(item, Leaf)), None)
+
+
+def _metadata(annotation: Any) -> Iterator[Any]:
+    """Yield what is annotated on a type or on the members of its union."""
+    if hasattr(annotation, "__metadata__"):
+        yield from annotation.__metadata__
+    elif get_origin(annotation) in (Union, types.UnionType):
+        for member in get_args(annotation):
+            yield from _metadata(member)
+
+
+def _plain(annotation: Any) -> Any:
+    """Return the type without its notes and without None."""
+    if hasattr(annotation, "__metadata__"):
+        return _plain(annotation.__origin__)
+    if get_origin(annotation) in (Union, types.UnionType):
+        members = [member for member in get_args(annotation) if member is not type(None)]
+        return _plain(members[0]) if len(members) == 1 else annotation
+    return annotation
+
+
+def _field(location: KeyPath) -> FieldInfo | None:
+    """Return the field a location ends at; an entry of a table or array belongs to the table's field."""
+    for length in range(len(location) - 1, -1, -1):
+        section, name = _section(location[:length]), location[length]
+        if section is not None and isinstance(name, str) and name in section.model_fields:
+            return section.model_fields[name]
+    return None
+
+
+def _section(location: KeyPath) -> type[Section] | None:
+    """Return the table a location leads to."""
+    current: Any = UnitFile
+    for part in location:
+        if isinstance(current, type) and issubclass(current, Section):
+            field = current.model_fields.get(str(part))
+            current = _plain(field.annotation) if field is not None else None
+        else:  # an entry of a dict or a row of a tuple
+            inner = [a for a in get_args(current) if a is not Ellipsis]
+            current = _plain(inner[-1]) if inner else None
+    return current if isinstance(current, type) and issubclass(current, Section) else None

@@ -1,0 +1,66 @@
+"""The unit file as a whole."""
+
+from typing import Annotated, Literal
+
+from throughfault.workbook.inputs.design import Design
+from throughfault.workbook.inputs.hole import HoleMetError
+from throughfault.workbook.inputs.impedances import ImpedanceRow, ZeroSequence
+from throughfault.workbook.inputs.leaves import Name, OneOf, key
+from throughfault.workbook.inputs.limits import Declared, Limit, ResultId
+from throughfault.workbook.inputs.rating import FORMAT, Identity, Rating, Standard
+from throughfault.workbook.inputs.section import Section
+from throughfault.workbook.inputs.system import Earthing, System, Withstand
+from throughfault.workbook.inputs.vector_group import VectorGroup, WindingConnection, parse_vector_group
+from throughfault.workbook.inputs.windings import PRINCIPAL, Winding
+
+
+class UnitFile(Section):
+    """One transformer."""
+
+    format: Annotated[Literal["throughfault-unit/1"], OneOf((FORMAT,))] = key("Format of the file.")
+    standard: Standard = key("Standard the review follows; without an edition the newest the kit carries.")
+    identity: Identity = key("Whose transformer this is.")
+    rating: Rating = key("The unit as a whole.")
+    windings: dict[Name, Winding] = key("Windings, in the order of the vector group's letters.", at_least=2)
+    impedances: tuple[ImpedanceRow, ...] = key("One row for each pair of windings and tapping.", at_least=1)
+    system: System = key("Networks at the terminals.", default=System())
+    earthing: dict[Name, Earthing] = key(
+        'Earthing of the neutrals: "solid", "isolated" or an impedance.',
+        "network operator",
+        default={},
+        in_words="solid where the letter has N or n",
+    )
+    zero_sequence: ZeroSequence | None = key("Magnetising zero-sequence impedance.", default=None)
+    tap_changer: Withstand | None = key("Tap changer.", default=None)
+    bushings: dict[Name, Withstand] = key("Bushings or leads, by winding.", default={})
+    neutral: dict[Name, Withstand] = key("Neutral bushings or leads, by winding.", default={})
+    design: Design | None = key("Mechanical design.", default=None)
+    limits: dict[ResultId, Limit] = key("A signatory's own limits, by check id.", default={})
+    declared: dict[ResultId, Declared] = key("What the maker states, by result id.", default={})
+
+    @property
+    def group(self) -> VectorGroup:
+        """The vector group, read."""
+        return parse_vector_group(self.rating.vector_group)
+
+    @property
+    def connections(self) -> dict[str, WindingConnection]:
+        """The connection of each winding by name.
+
+        Raises
+        ------
+        HoleMetError
+            If the vector group has not as many letters as there are windings (a fault of its own).
+        """
+        connections = self.group.windings
+        if len(connections) != len(self.windings):
+            raise HoleMetError
+        return dict(zip(self.windings, connections, strict=True))
+
+    @property
+    def tapping_names(self) -> tuple[str, ...]:
+        """Names of all tappings, principal first."""
+        names = dict.fromkeys([PRINCIPAL])
+        for winding in self.windings.values():
+            names.update(dict.fromkeys(winding.tappings))
+        return tuple(names)
