@@ -1,0 +1,123 @@
+"""First peak of the short-circuit current over its r.m.s. symmetrical value, by three routes."""
+
+from __future__ import annotations
+
+from itertools import pairwise
+from math import atan, exp, pi, sin, sqrt
+from typing import Annotated, Any
+
+import numpy as np
+from numpy.typing import ArrayLike
+
+from throughfault import nomenclature as nom
+from throughfault.declare import Equation, Range, algorithm, cell
+from throughfault.errors import OutsideValidity
+from throughfault.numerics.wave import first_maximum
+from throughfault.sources import Source
+from throughfault.tables import table
+
+__all__ = ["peak_factor_closed_form", "peak_factor_exact", "peak_factor_from_table", "peak_short_circuit_current"]
+
+
+@cell(
+    title="Peak factor, closed form",
+    source=Source("IEC60076-5:2006", "4.2.3 (the same as K of IEEE C57.12.00, 7.2)", "recalled"),
+    valid_for=(Range("x_over_r", above=0.0, at_most=1e6),),
+    terms={"phi": nom.impedance_angle},
+    checks=(
+        "tests/published/peak_factor.toml: the eleven factors of the IEEE table",
+        "tests/cells/test_peak_factor.py: below the exact first maximum, and by less than 1 %",
+    ),
+)
+def peak_factor_closed_form(x_over_r: Annotated[float, nom.x_over_r]) -> Annotated[float, nom.peak_factor]:
+    """Envelope of the offset wave at the crest of its alternating part; up to 0.8 % below the true first maximum."""
+    x = x_over_r
+    phi = atan(x)
+    return (1 + exp(-(phi + pi / 2) / x) * sin(phi)) * sqrt(2)
+
+
+def _phase_of(x_over_r: float, factor: float) -> tuple[float, float]:
+    """Return the phase of the first crest on a fine grid, and how far the crest is from a factor."""
+    phi = float(np.arctan(x_over_r))
+    theta = np.linspace(phi, phi + np.pi, 200_001)
+    wave = np.sqrt(2) * (np.sin(theta - phi) + np.sin(phi) * np.exp(-theta / x_over_r))
+    crest = float(theta[np.argmax(wave)])
+    return crest, float(np.max(wave)) / factor - 1.0
+
+
+def _slope_there(given: dict[str, float], got: float) -> float:
+    phase, _ = _phase_of(given["x_over_r"], got)
+    phi = atan(given["x_over_r"])
+    return float(abs(np.cos(phase - phi) - np.cos(phi) * np.exp(-phase / given["x_over_r"])))
+
+
+def _crest(given: dict[str, float], got: float) -> float:
+    return abs(_phase_of(given["x_over_r"], got)[1])
+
+
+@algorithm(
+    title="Peak factor, exact first maximum",
+    source=Source("CircuitTheory", "series resistance and reactance closed at voltage zero", "derived"),
+    equations=(
+        Equation(r"\cos(\vartheta-\varphi)-\cos\varphi\,e^{-\vartheta R/X}=0", _slope_there),
+        Equation(r"k\sqrt{2}=\sqrt{2}\left[\sin(\vartheta-\varphi)+\sin\varphi\,e^{-\vartheta R/X}\right]", _crest),
+    ),
+    example=lambda: {"x_over_r": 7.0},
+    valid_for=("X/R at least 0; closing at voltage zero, which gives the greatest first peak",),
+    checks=(
+        "tests/test_every_table.py: every row of the IEC table is this maximum rounded to 0.01",
+        "tests/cells/test_peak_factor.py: against numerical integration of the circuit",
+    ),
+)
+def peak_factor_exact(x_over_r: ArrayLike) -> Any:
+    """First maximum of the wave of a series circuit closed at voltage zero; a float, or an array of the same shape."""
+    peak = first_maximum(x_over_r)
+    return float(peak) if peak.ndim == 0 else peak
+
+
+def _between_its_rows(given: dict[str, float], got: float) -> float:
+    """Residual of the two-point form of the straight line through the neighbouring rows."""
+    factors = table("iec60076_5_2006_peak_factor")
+    rows = list(zip(factors.column("x_over_r"), factors.column("peak_factor"), strict=True))
+    x = given["x_over_r"]
+    (x1, k1), (x2, k2) = next((a, b) for a, b in pairwise(rows) if a[0] <= x <= b[0])
+    return float(abs((got - k1) * (x2 - x1) - (k2 - k1) * (x - x1)))
+
+
+@algorithm(
+    title="Peak factor, table",
+    source=Source("IEC60076-5:2006", "4.2.3, Table 4", "recalled"),
+    equations=(
+        Equation(
+            r"k\sqrt{2}=(k\sqrt{2})_1+\frac{(k\sqrt{2})_2-(k\sqrt{2})_1}{(X/R)_2-(X/R)_1}\left[X/R-(X/R)_1\right]",
+            _between_its_rows,
+        ),
+    ),
+    example=lambda: {"x_over_r": 7.0},
+    valid_for=("X/R at least 1 and at most 14",),
+    checks=("tests/cells/test_peak_factor.py: rows are returned as tabled, a middle value lies on the straight line",),
+)
+def peak_factor_from_table(x_over_r: ArrayLike) -> Any:
+    """Factor of the standard's table, interpolated linearly; a float, or an array of the same shape."""
+    factors = table("iec60076_5_2006_peak_factor")
+    x = np.asarray(x_over_r, dtype=np.float64)
+    if not bool(np.all((x >= 1.0) & (x <= 14.0))):
+        place = factors.source.citation
+        raise OutsideValidity(f"peak_factor_from_table: 'x_over_r' must be at least 1 and at most 14 ({place}).")
+    factor = np.asarray(np.interp(x, factors.column("x_over_r"), factors.column("peak_factor")))
+    return float(factor) if factor.ndim == 0 else factor
+
+
+@cell(
+    title="First peak of the short-circuit current",
+    source=Source("IEC60076-5:2006", "4.2.3", "recalled"),
+    valid_for=(Range("symmetrical_current", at_least=0.0), Range("peak_factor", at_least=sqrt(2), at_most=2 * sqrt(2))),
+    checks=("tests/published/fault_current.toml: 40 MVA, 132 kV unit",),
+)
+def peak_short_circuit_current(
+    symmetrical_current: Annotated[float, nom.symmetrical_current],
+    peak_factor: Annotated[float, nom.peak_factor],
+) -> Annotated[float, nom.peak_current]:
+    """Greatest first peak of the phase in which the short circuit begins at voltage zero."""
+    current, factor = symmetrical_current, peak_factor
+    return current * factor
