@@ -1,0 +1,154 @@
+"""Formula trees as LaTeX: once with symbols, once with the numbers and units of a run.
+
+The author's order is kept, every product sign is written, brackets follow from precedence alone.
+"""
+
+from __future__ import annotations
+
+import re
+from collections.abc import Callable
+from dataclasses import dataclass, field
+from typing import Any
+
+from throughfault.declare import Cell, Step, Symbol
+from throughfault.declare.formula import CONSTANTS, Binary, Call, Choice, Compare, Name, Negative, Node, Number
+from throughfault.quantities import Quantity
+from throughfault.render.numbers import number_latex, unit_latex
+
+__all__ = ["formula_lines", "worked_lines"]
+
+# Precedence: what binds tighter is larger. A quantity with a unit and a fraction may stand in a
+# product without brackets, yet not under a power.
+CASES, SUM, PRODUCT, POWER, ATOM = range(5)
+_ATOMIC = re.compile(r"\\?[A-Za-z]+(?:_(?:[A-Za-z0-9]|\{[^{}]*(?:\{[^{}]*\}[^{}]*)*\}))?")
+_COMPARE = {"<": "<", "<=": r"\le", ">": ">", ">=": r"\ge"}
+_OPPOSITE = {"<": ">=", "<=": ">", ">": "<=", ">=": "<"}
+_NAMED = {"sin": r"\sin", "cos": r"\cos", "tan": r"\tan", "atan": r"\arctan", "log": r"\ln",
+          "log10": r"\log_{10}", "min": r"\min", "max": r"\max"}  # fmt: skip
+
+
+@dataclass(frozen=True, slots=True)
+class _Printed:
+    text: str
+    binds: int
+
+    def within(self, least: int) -> str:
+        """Return the text, in brackets where it binds less than `least`."""
+        return self.text if self.binds >= least else rf"\left({self.text}\right)"
+
+
+def _number(text: str) -> _Printed:
+    """Print a number as the author wrote it; a power of ten is spelt out."""
+    digits, _, power = text.lower().partition("e")
+    if not power:
+        return _Printed(digits.removesuffix(".0"), ATOM)
+    return _Printed(rf"{digits.removesuffix('.0')} \times 10^{{{int(power)}}}", POWER)
+
+
+def _symbol(symbol: Symbol) -> _Printed:
+    # A letter built of others, such as X/R, is bracketed wherever it would bind to its neighbour.
+    binds = ATOM if _ATOMIC.fullmatch(symbol.latex) else PRODUCT if "/" in symbol.latex else POWER
+    return _Printed(symbol.latex, binds)
+
+
+def _quantity(quantity: Quantity) -> _Printed:
+    text, unit = number_latex(quantity.value), unit_latex(quantity.unit)
+    if text.startswith("-"):
+        return _Printed(text + unit, SUM)
+    return _Printed(text + unit, ATOM if not unit and "times" not in text else POWER)
+
+
+@dataclass(slots=True)
+class _Printer:
+    """Prints one tree; `leaf` prints a term.
+
+    With `holds`, a choice shows only the branch that was taken, and its condition is kept in `taken`.
+    """
+
+    leaf: Callable[[str], _Printed]
+    holds: Callable[[Compare], bool] | None = None
+    taken: list[str] = field(default_factory=list)
+
+    def node(self, node: Node) -> _Printed:
+        match node:
+            case Number(text=text):
+                return _number(text)
+            case Name(term=term):
+                return _Printed(rf"\{term}", ATOM) if term in CONSTANTS else self.leaf(term)
+            case Negative(node=inner):
+                return _Printed(f"-{self.node(inner).within(PRODUCT)}", SUM)
+            case Binary():
+                return self.binary(node)
+            case Call(function=function, arguments=arguments):
+                return self.call(function, [self.node(a).text for a in arguments], node)
+            case Choice():
+                return self.choice(node)
+
+    def binary(self, node: Binary) -> _Printed:
+        left, right = self.node(node.left), self.node(node.right)
+        match node.sign:
+            case "/":
+                return _Printed(rf"\frac{{{left.text}}}{{{right.text}}}", POWER)
+            case "**":
+                return _Printed(f"{left.within(ATOM)}^{{{right.text}}}", POWER)
+            case "*":
+                return _Printed(rf"{left.within(PRODUCT)} \cdot {right.within(POWER)}", PRODUCT)
+        return _Printed(f"{left.within(SUM)} {node.sign} {right.within(PRODUCT)}", SUM)
+
+    def call(self, function: str, arguments: list[str], node: Call) -> _Printed:
+        match function:
+            case "sqrt":
+                return _Printed(rf"\sqrt{{{arguments[0]}}}", ATOM)
+            case "exp":
+                return _Printed(f"e^{{{arguments[0]}}}", POWER)
+            case "abs":
+                return _Printed(rf"\left|{arguments[0]}\right|", ATOM)
+            case "hypot":
+                squares = [f"{self.node(a).within(ATOM)}^{{2}}" for a in node.arguments]
+                return _Printed(rf"\sqrt{{{' + '.join(squares)}}}", ATOM)
+        return _Printed(rf"{_NAMED[function]}\left({', '.join(arguments)}\right)", POWER)
+
+    def compare(self, test: Compare, sign: str) -> str:
+        return f"{self.node(test.left).within(SUM)} {_COMPARE[sign]} {self.node(test.right).within(SUM)}"
+
+    def choice(self, node: Choice) -> _Printed:
+        if self.holds is None:
+            rows = r" \\ ".join(self.rows(node))
+            return _Printed(rf"\begin{{cases}} {rows} \end{{cases}}", CASES)
+        applies = self.holds(node.test)
+        self.taken.append(self.compare(node.test, node.test.sign if applies else _OPPOSITE[node.test.sign]))
+        return self.node(node.then if applies else node.otherwise)
+
+    def rows(self, node: Node) -> list[str]:
+        if not isinstance(node, Choice):
+            return [rf"{self.node(node).text} & \text{{otherwise}}"]
+        first = rf"{self.node(node.then).text} & \text{{if }} {self.compare(node.test, node.test.sign)}"
+        return [first, *self.rows(node.otherwise)]
+
+
+def formula_lines(cell: Cell[Any]) -> list[str]:
+    """Print the formula of a cell with its symbols, one LaTeX line for each term and the result."""
+    printer = _Printer(lambda term: _symbol(cell.symbol(term)))
+    return [f"{_left(cell, line.term)} = {printer.node(line.node).text}" for line in cell.formula.lines]
+
+
+def worked_lines(step: Step) -> list[str]:
+    """Print the same formula with the numbers and units of the run, each line closed by its result.
+
+    Where the formula has a choice, the branch that applied stands with the comparison that chose it.
+    """
+    quantities = step.arguments | step.terms
+    values = {term: quantity.value for term, quantity in quantities.items()}
+    lines = []
+    for line in step.cell.formula.lines:
+        printer = _Printer(lambda term: _quantity(quantities[term]), lambda test: test.holds(values))
+        worked = printer.node(line.node).text
+        result = _quantity(step.result if line.term is None else step.terms[line.term]).text
+        taken = r" \text{ and } ".join(printer.taken)
+        because = rf" \quad \text{{as }} {taken}" if taken else ""
+        lines.append(f"{_left(step.cell, line.term)} = {worked} = {result}{because}")
+    return lines
+
+
+def _left(cell: Cell[Any], term: str | None) -> str:
+    return (cell.result if term is None else cell.terms[term]).latex
