@@ -1,0 +1,70 @@
+"""Verdicts by ability, the route that would complete them, and the limits nobody has confirmed."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+from typing import Any
+
+from throughfault.declare import ABILITIES, Check, Fragment, Missing, OpenPoint, overall_verdict, verdict_of
+from throughfault.workbook.inputs import Unit
+
+__all__ = ["NO_ROUTE", "Conclusion", "conclude", "route_check"]
+
+NO_ROUTE = "none complete"
+ROUTE_ID = "dynamic.route"
+ROUTE_REASON = "no route is complete: neither a special test, nor a calculation, nor a similar tested unit is in hand"
+
+
+@dataclass(frozen=True)
+class Conclusion:
+    """What the review concludes from its checks.
+
+    Attributes
+    ----------
+    checks
+        Every check of the unit, whichever template shows them.
+    verdicts
+        ``thermal``, ``dynamic`` and ``overall``.
+    route
+        The route by which dynamic ability is demonstrated.
+    unconfirmed
+        Checks whose verdict rests on a recalled limit.
+    """
+
+    checks: tuple[Check, ...]
+    verdicts: dict[str, str]
+    route: str
+    unconfirmed: tuple[Check, ...]
+    fragment: Fragment
+
+    def entry(self) -> dict[str, Any]:
+        """Return what the verdict part adds to the results file."""
+        return {**self.fragment.entry(), "verdicts": self.verdicts, "route": self.route}
+
+
+def route_check(unit: Unit) -> tuple[Check, Missing]:
+    """Return the check that dynamic ability needs a route, and what would supply one."""
+    keys = ("design",) if unit.design is None else ("design (forces and strength)",)
+    check = Check(ROUTE_ID, None, "1", None, "dynamic", reason=ROUTE_REASON)
+    return check, Missing(ROUTE_ID, keys, ROUTE_REASON)
+
+
+def conclude(unit: Unit, checks: Sequence[Check]) -> Conclusion:
+    """Draw the verdicts from all checks of a unit.
+
+    Dynamic ability needs one complete route; checks alone, of apparatus for instance, do not make one.
+    """
+    route, missing = route_check(unit)
+    everything = (*checks, route)
+    verdicts: dict[str, str] = {a: verdict_of(c for c in everything if c.ability == a) for a in ABILITIES}
+    worst = overall_verdict(verdict_of(c for c in everything if c.ability == a) for a in ABILITIES)
+    unconfirmed = tuple(check for check in everything if check.unconfirmed)
+    points = tuple(_unconfirmed_point(check) for check in unconfirmed)
+    fragment = Fragment(checks=everything, missing=(missing,), open_points=points)
+    return Conclusion(everything, {**verdicts, "overall": worst}, NO_ROUTE, unconfirmed, fragment)
+
+
+def _unconfirmed_point(check: Check) -> OpenPoint:
+    template = f"{check.id}: the limit carries a verdict and is recalled; a signatory must confirm it from a licensed copy"
+    return OpenPoint(f"limit.{check.id}", template, clause=check.limit.source if check.limit else "", blocking=True)
