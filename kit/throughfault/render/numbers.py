@@ -68,7 +68,7 @@ def number_text(value: float, digits: int = DIGITS) -> str:
         If it is not finite: such a result is not assessed, and never shown as a number.
     """
     plain, power = _split(value, digits)
-    raised = "" if power is None else f"×10{str(power).translate(_RAISED)}"
+    raised = "" if power is None else f"\N{MULTIPLICATION SIGN}10{str(power).translate(_RAISED)}"
     return plain.replace("-", MINUS) + raised
 
 
@@ -85,7 +85,7 @@ def column_text(values: Sequence[float | None], digits: int = COLUMN_DIGITS) -> 
     """
     present = [Decimal(repr(float(v))) for v in values if v is not None]
     largest = max((number.adjusted() for number in present if number), default=0)
-    if not -4 <= largest < 7:  # noqa: PLR2004 - the powers of ten of the two bounds above
+    if not -4 <= largest < 7:  # the powers of ten of the two bounds above
         return ["" if v is None else number_text(v, digits) for v in values]
     decimals = max(0, digits - 1 - largest)
     return ["" if v is None else f"{Decimal(repr(float(v))):.{decimals}f}".replace("-", MINUS) for v in values]

@@ -1,0 +1,164 @@
+"""Blocks of a record that recur: a worked formula, checks with their utilisation, open points."""
+
+from __future__ import annotations
+
+import string
+from collections.abc import Iterable, Mapping, Sequence
+from typing import Any
+
+from markupsafe import Markup
+
+from throughfault.declare import Algorithm, Step
+from throughfault.render.html import (
+    NOT_ASSESSED,
+    Column,
+    Text,
+    clause,
+    code,
+    data,
+    identity,
+    items,
+    joined,
+    prose,
+    quantity,
+    slug,
+    table,
+)
+from throughfault.render.latex import formula_lines, worked_lines
+from throughfault.render.mathml import mathml
+from throughfault.render.numbers import quantity_text
+
+__all__ = ["algorithm_block", "check_table", "formula_block", "missing_list", "open_point_list", "utilisation_bar"]
+
+FULL_BAR = 1.25  # the bar's right end; its mark at 1 stands at four fifths
+BAR_STEPS = 125
+
+Entry = Mapping[str, Any]
+
+
+def _lines(lines: Iterable[str], kind: str) -> Markup:
+    return joined(Markup('<div class="{}">{}</div>').format(kind, mathml(line, display=True)) for line in lines)
+
+
+def _arguments(step: Step) -> Markup:
+    rows = [
+        [
+            mathml(step.cell.symbol(name).latex),
+            prose(step.cell.symbol(name).description),
+            quantity(f"steps/{step.id}/arguments/{name}", q.value, q.unit),
+        ]
+        for name, q in step.arguments.items()
+    ]
+    return table("Where", ["Symbol", "Quantity", Column("Value", numeric=True)], rows, "where")
+
+
+def formula_block(step: Step, heading: Text | None = None) -> Markup:
+    """Show a step: title, citation, formula, the same with the run's numbers, arguments and result."""
+    cell = step.cell
+    result = quantity(f"steps/{step.id}/result", step.result.value, step.result.unit)
+    return Markup(
+        '<section class="formula" aria-labelledby="step-{id}"><h4 id="step-{id}">{title}</h4>'
+        '<p class="source">{source}</p>{formula}{worked}{where}'
+        '<p class="result">{description}: {symbol} = {result}</p></section>\n'
+    ).format(
+        id=slug(step.id), title=prose(cell.title) if heading is None else heading,
+        source=clause(cell.source.citation, cell.source.provenance),
+        formula=_lines(formula_lines(cell), "equation"), worked=_lines(worked_lines(step), "equation worked"),
+        where=_arguments(step), description=prose(cell.result.description.capitalize()),
+        symbol=mathml(cell.result.latex), result=result,
+    )  # fmt: skip
+
+
+def algorithm_block(algorithm: Algorithm, content: Text = "") -> Markup:
+    """Show the governing equations of a solver, where it holds, and what it gave."""
+    validity = items((prose(text) for text in algorithm.valid_for), "validity")
+    return Markup(
+        '<section class="formula" aria-labelledby="cell-{id}"><h4 id="cell-{id}">{title}</h4>'
+        '<p class="source">{source}</p>{equations}<p>Holds for:</p>{validity}{content}</section>\n'
+    ).format(
+        id=slug(algorithm.name), title=prose(algorithm.title),
+        source=clause(algorithm.source.citation, algorithm.source.provenance),
+        equations=_lines((e.latex for e in algorithm.equations), "equation"), validity=validity, content=content,
+    )  # fmt: skip
+
+
+def utilisation_bar(id: str, used: float | None) -> Markup:  # noqa: A002 - the record's own word
+    """Show a utilisation as number and bar; the mark on the bar is 1, a hatched bar lies beyond it."""
+    if used is None:
+        return NOT_ASSESSED
+    shown = f"{used:.3f}"
+    width = min(BAR_STEPS, round(used * 100))
+    beyond = " beyond" if used > 1.0 else ""
+    return Markup(
+        '<span class="bar u{}{}" role="img" aria-label="utilisation {}"><span class="fill"></span></span> {}'
+    ).format(width, beyond, shown, data(id, used, shown))  # fmt: skip
+
+
+def _limit(check: Entry) -> Markup:
+    if check["limit"] is None:
+        return NOT_ASSESSED
+    shown = quantity_text(check["limit"], check["unit"])
+    limit = Markup("{} {}").format(check["sense"], data(f"checks/{check['id']}/limit", check["limit"], shown))
+    kit = check.get("kit_limit")
+    if kit is None:
+        return limit
+    original = data(f"checks/{check['id']}/kit_limit/value", kit["value"], quantity_text(kit["value"], check["unit"]))
+    return limit + Markup('<br><span class="instead">instead of {}, {}</span>').format(
+        original, clause(kit["source"], kit["provenance"])
+    )
+
+
+def _check_row(check: Entry) -> list[Text]:
+    source = clause(check["limit_source"], check["limit_provenance"]) if check["limit_source"] else Markup("")
+    reason = check.get("reason")
+    verdict = Markup('<strong class="verdict">{}</strong>').format(check["verdict"])
+    if reason:
+        verdict += Markup('<br><span class="clause">{}</span>').format(reason)
+    governing = identity(check["governing_case"]) if check["governing_case"] else Markup("")
+    return [
+        identity(check["id"]),
+        quantity(f"checks/{check['id']}/value", check["value"], check["unit"]),
+        _limit(check),
+        utilisation_bar(f"checks/{check['id']}/utilisation", check["utilisation"]),
+        verdict,
+        joined([source, governing], Markup("<br>") if source and governing else ""),
+    ]
+
+
+def check_table(checks: Sequence[Entry], caption: Text = "Results held against their limits") -> Markup:
+    """Set the checks of a review (entries of the results file) with utilisation, verdict and source."""
+    columns: list[Column | str] = [
+        "Check", Column("Value", numeric=True), Column("Limit", numeric=True), "Utilisation", "Verdict",
+        "Source of the limit; governing case",
+    ]  # fmt: skip
+    return table(caption, columns, [_check_row(check) for check in checks], "checks")
+
+
+def _point(point: Entry) -> Markup:
+    parts: list[Text] = []
+    for literal, name, _, _ in string.Formatter().parse(point["template"]):
+        parts.append(prose(literal))
+        if name is not None:
+            q = point["values"][name]
+            parts.append(quantity(f"open_points/{point['id']}/{name}", q["value"], q["unit"]))
+    if point["clause"]:
+        parts += [" ", clause(point["clause"])]
+    if point["blocking"]:
+        parts.append(Markup(" <strong>To be settled before approval.</strong>"))
+    return joined(parts)
+
+
+def open_point_list(points: Sequence[Entry]) -> Markup:
+    """List what a reviewer must settle or know, its numbers as data; says so when there is none."""
+    if not points:
+        return Markup("<p>No open points.</p>")
+    return items(Markup("{} {}").format(code(p["id"]), _point(p)) for p in points)
+
+
+def missing_list(missing: Sequence[Entry]) -> Markup:
+    """List what could not be assessed, why, and the keys that would supply it."""
+    if not missing:
+        return Markup("<p>Nothing is left out for want of inputs.</p>")
+    reason = Markup('<span class="clause">{}</span>')
+    rows = [[identity(m["id"]), reason.format(m["reason"]), joined(map(code, m["keys"]), ", ")] for m in missing]
+    return table("Not assessed for want of inputs", ["Result", "Reason", "Keys that would supply it"], rows)
