@@ -49,7 +49,9 @@ def assess_declared(
 
 
 def _difference(name: str, declared: Quantity, calculated: Quantity) -> OpenPoint:
-    unlike = (calculated.to(declared.unit) / declared.value - 1.0) if declared.value else float("inf")
-    template = f"{name}: the maker declares {{declared}}, calculated {{calculated}} ({{deviation}} against the declared value)"
-    values = {"declared": declared, "calculated": calculated, "deviation": Quantity(100.0 * unlike, "%")}
+    template = f"{name}: the maker declares {{declared}}, calculated {{calculated}}"
+    values = {"declared": declared, "calculated": calculated}
+    if declared.value != 0.0:
+        template += " ({deviation} against the declared value)"
+        values["deviation"] = Quantity(100.0 * (calculated.to(declared.unit) / declared.value - 1.0), "%")
     return OpenPoint(f"declared.{name}", template, values)
