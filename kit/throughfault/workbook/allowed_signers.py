@@ -140,9 +140,7 @@ def _parse_options(text: str) -> tuple[dict[str, str], str]:
     while True:
         match = OPTION.match(text, position)
         if match is None:
-            raise ValueError(
-                f'options must be name="value" with commas between, got {text[position:][:40]!r}'
-            )
+            raise ValueError(f'options must be name="value" with commas between, got {text[position:][:40]!r}')
         name, value = match[1].lower(), match[2]
         _check_option(name, value, options)
         options[name] = value.replace('\\"', '"')

@@ -57,8 +57,9 @@ def replace_record(staging: Path, target: Path) -> None:
     Raises
     ------
     RecordError
-        The staging folder is no whole record, or the target is signed, is no record, or cannot be renamed.
-        The target is as it was.
+        The staging folder is no whole record, or the target is signed or is no record.
+    OSError
+        A folder cannot be renamed. In both cases the target is as it was.
     """
     if not all((staging / name).is_file() for name in (MANIFEST, SUMS)):
         raise RecordError(f"record {target.name}: the new folder is not finished; it has no {MANIFEST} and {SUMS}")
@@ -70,11 +71,9 @@ def replace_record(staging: Path, target: Path) -> None:
             target.replace(aside)
             _refuse_to_replace(aside, target.name)  # somebody may have signed since
         staging.replace(target)
-    except BaseException as error:
+    except BaseException:
         if aside.exists() and not target.exists():
             aside.replace(target)
-        if isinstance(error, OSError):
-            raise RecordError(f"record {target.name}: cannot be put in place: {error.strerror}") from error
         raise
     _discard(aside)
 

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
+from collections.abc import Callable, Iterable
 from dataclasses import dataclass
 from pathlib import Path
 
@@ -26,7 +26,7 @@ from throughfault.workbook.tree import Faults, Tree, scan
 
 __all__ = ["Integrity", "PageLint", "check_integrity"]
 
-PageLint = Callable[[str], list[str]]
+PageLint = Callable[[str], Iterable[str]]
 SUMS_LIMIT = 1 << 20
 
 

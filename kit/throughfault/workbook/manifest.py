@@ -114,7 +114,10 @@ def inputs_sha256(record: Path) -> str:
     faults = Faults()
     if not (record / "inputs").is_dir():
         raise RecordError("inputs/: the record has no folder of inputs")
-    hashes = {f"inputs/{name}": value for name, value in scan(record / "inputs", faults).hashes.items()}
+    below = Faults()
+    hashes = {f"inputs/{name}": value for name, value in scan(record / "inputs", below).hashes.items()}
+    for name, sentence in below.found:
+        faults.add(f"inputs/{name}", sentence)
     if not hashes:
         faults.add("inputs/", "holds no file")
     if faults.found:

@@ -46,7 +46,7 @@ def sign(
     comment: str = "",
     signed_on: datetime | None = None,
     *,
-    passphrase: Callable[[], str] | None = None,
+    passphrase: Callable[[], bytes] | None = None,
     page_lint: PageLint | None = None,
 ) -> SignReport:
     """Verify a record, then sign its manifest and every earlier statement in a role.
@@ -132,8 +132,9 @@ def _unfinished(record: Path, journal: Path) -> dict[str, str]:
     except (OSError, ValueError):
         return {}
     added = {name: value for name, value in new.items() if name not in old}
-    one_pair = len(added) == 2 and len({name.rpartition(".")[0] for name in added if parse_name(name)}) == 1
-    return added if one_pair and old.items() <= new.items() else {}
+    stem = next(iter(added), "").rpartition(".")[0]
+    is_pair = set(added) == {f"{stem}.json", f"{stem}.sig"} and all(parse_name(name) for name in added)
+    return added if is_pair and old.items() <= new.items() else {}
 
 
 def _check_arguments(role: str, decision: str, signer: str, comment: str) -> None:

@@ -93,7 +93,7 @@ def parse_signature(data: bytes) -> SshSignature:
     return SshSignature(key, namespace.decode("utf-8", "backslashreplace"), hash_name, value)
 
 
-def load_private_key(path: Path, passphrase: Callable[[], str] | None = None) -> Ed25519PrivateKey:
+def load_private_key(path: Path, passphrase: Callable[[], bytes] | None = None) -> Ed25519PrivateKey:
     """Return the Ed25519 key in an OpenSSH private key file.
 
     Parameters
@@ -119,8 +119,7 @@ def load_private_key(path: Path, passphrase: Callable[[], str] | None = None) ->
         )
     key = _decrypt(path.name, data, passphrase)
     if not isinstance(key, Ed25519PrivateKey):
-        kind = type(key).__name__.removesuffix("PrivateKey").lstrip("_")
-        raise InputError(f"key {path.name}: must be an Ed25519 key, got {kind}")
+        raise InputError(f"key {path.name}: must be an Ed25519 key and is of another kind")
     return key
 
 
@@ -134,7 +133,7 @@ def fingerprint(blob: bytes) -> str:
     return "SHA256:" + base64.b64encode(hashlib.sha256(blob).digest()).decode().rstrip("=")
 
 
-def _decrypt(name: str, data: bytes, passphrase: Callable[[], str] | None) -> object:
+def _decrypt(name: str, data: bytes, passphrase: Callable[[], bytes] | None) -> object:
     try:
         return load_ssh_private_key(data, None)
     except TypeError:  # encrypted
@@ -143,7 +142,7 @@ def _decrypt(name: str, data: bytes, passphrase: Callable[[], str] | None) -> ob
     except (ValueError, UnsupportedAlgorithm) as error:
         raise InputError(f"key {name}: is not a readable OpenSSH private key: {error}") from None
     try:
-        return load_ssh_private_key(data, passphrase().encode())
+        return load_ssh_private_key(data, passphrase())
     except (ValueError, UnsupportedAlgorithm) as error:
         raise InputError(f"key {name}: cannot be opened with this passphrase: {error}") from None
 
@@ -197,4 +196,4 @@ class _Reader:
 
     def end(self) -> None:
         if self.data:
-            raise ValueError("holds more than one signature")
+            raise ValueError("has bytes left over")

@@ -29,9 +29,8 @@ class Faults:
     found: list[tuple[str, str]] = field(default_factory=list)
 
     def add(self, path: str, sentence: str) -> None:
-        """Note a fault of the file at `path`, unless the same is noted already."""
-        if (path, sentence) not in self.found:
-            self.found.append((path, sentence))
+        """Note a fault of the file at `path`."""
+        self.found.append((path, sentence))
 
     def names(self, path: str) -> bool:
         """Say whether a fault of this file is noted already."""
