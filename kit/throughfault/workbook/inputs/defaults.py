@@ -15,12 +15,12 @@ from throughfault.workbook.inputs.windings import Winding
 __all__ = ["defaults_used"]
 
 #: optional keys whose absence means "none", nothing is assumed for them
-_NONE = ((), {}, None)
+_NONE: tuple[Any, ...] = ((), {}, None)
 
 
 def defaults_used(file: UnitFile) -> tuple[Default, ...]:
     """Return each default that stands for a key the file does not give, in the order of the file."""
-    return tuple([*_of(file, ()), *_settled(file)])
+    return (*_of(file, ()), *_settled(file))
 
 
 def _of(section: Section, path: KeyPath) -> Iterator[Default]:

@@ -4,26 +4,23 @@ from dataclasses import dataclass
 from typing import Annotated, Literal
 
 from throughfault.quantities import Quantity
-from throughfault.workbook.inputs.leaves import (
+from throughfault.workbook.inputs.leaves import Count, Number, OneOf
+from throughfault.workbook.inputs.measures import ByTapping, Measure
+from throughfault.workbook.inputs.section import Section
+from throughfault.workbook.inputs.vocabulary import (
     DESIGN,
     Area,
-    ByTapping,
-    Count,
     Force,
     Height,
     Length,
     Material,
-    Measure,
     Name,
-    Number,
-    OneOf,
     Stress,
     Title,
     Whole,
     Yes,
     key,
 )
-from throughfault.workbook.inputs.section import Section
 
 Covering = Annotated[Quantity, Measure("mm", least_allowed=True)]
 
@@ -58,7 +55,8 @@ class Block(Section):
     bottom: Height = key("Lower end above the lower yoke.", DESIGN)
     top: Height = key("Upper end above the lower yoke.", DESIGN)
     turns: Annotated[float | dict[str, float], ByTapping(Turns())] = key(
-        "Series turns of the block in its own path; may be a table by tapping, negative against the main coil.", DESIGN
+        "Series turns of the block in its own path; may be a table by tapping, negative against the main coil.",
+        DESIGN,
     )
     discs: Whole | None = key("Discs of the block.", DESIGN, default=None)
 
@@ -106,9 +104,9 @@ class Coil(Section):
 
     name: Name = key("Name of the coil, used in result ids.", DESIGN)
     winding: Name = key("Winding it belongs to; several coils of a winding are in series.", DESIGN)
-    kind: Annotated[Literal["disc", "helical", "layer", "foil"], OneOf(("disc", "helical", "layer", "foil"))] = key(
-        "Kind of coil.", DESIGN
-    )
+    kind: Annotated[
+        Literal["disc", "helical", "layer", "foil"], OneOf(("disc", "helical", "layer", "foil"))
+    ] = key("Kind of coil.", DESIGN)
     inner_radius: Length = key("Inner radius.", DESIGN)
     outer_radius: Length = key("Outer radius.", DESIGN)
     parallel_paths: Whole = key("Parallel paths; each carries its share of the current.", DESIGN, default=1)
@@ -132,9 +130,13 @@ class Clamping(Section):
     ring_thickness: Length | None = key("Thickness of the press ring.", DESIGN, default=None)
     ring_material: Title | None = key("Material of the press ring.", DESIGN, default=None)
     clamping_points: Whole | None = key("Points at which the ring is pressed.", DESIGN, default=None)
-    tie_section: Area | None = key("Section of the tie rods or flitch plates of one limb.", DESIGN, default=None)
+    tie_section: Area | None = key(
+        "Section of the tie rods or flitch plates of one limb.", DESIGN, default=None
+    )
     tie_yield: Stress | None = key("Yield stress of the ties.", DESIGN, default=None)
-    end_stack_thickness: Length | None = key("Insulation between coil and yoke, one end.", DESIGN, default=None)
+    end_stack_thickness: Length | None = key(
+        "Insulation between coil and yoke, one end.", DESIGN, default=None
+    )
 
 
 class Design(Section):

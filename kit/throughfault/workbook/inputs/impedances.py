@@ -4,20 +4,9 @@ from dataclasses import dataclass
 from typing import Annotated, Any, Literal
 
 from throughfault.quantities import Quantity
-from throughfault.workbook.inputs.leaves import (
-    NAME,
-    PLATE,
-    TEST,
-    Leaf,
-    Loss,
-    Name,
-    OneOf,
-    Percent,
-    Power,
-    Tolerance,
-    key,
-)
+from throughfault.workbook.inputs.leaves import NAME, Leaf, OneOf
 from throughfault.workbook.inputs.section import Section
+from throughfault.workbook.inputs.vocabulary import PLATE, TEST, Loss, Name, Percent, Power, Tolerance, key
 from throughfault.workbook.inputs.windings import PRINCIPAL
 
 REPORT = f"{TEST} or {PLATE}"
@@ -53,9 +42,14 @@ class ImpedanceRow(Section):
     tapping: Name = key("Tapping the row holds for.", REPORT, default=PRINCIPAL)
     impedance: Percent = key("Short-circuit impedance, its magnitude.", REPORT)
     base_power: Power = key("Power the per cent values refer to.", REPORT)
-    load_loss: Loss | None = key("Load loss at base power and reference temperature; or resistance.", TEST, default=None)
+    load_loss: Loss | None = key(
+        "Load loss at base power and reference temperature; or resistance.", TEST, default=None
+    )
     resistance: Percent | None = key(
-        "A.c. resistance; or load_loss.", TEST, default=None, in_words="load_loss over base_power; without either zero"
+        "A.c. resistance; or load_loss.",
+        TEST,
+        default=None,
+        in_words="load_loss over base_power; without either zero",
     )
     dc_resistance: Percent | None = key(
         "D.c. resistance, for the decay of the offset.", TEST, default=None, in_words="the a.c. resistance"
@@ -70,7 +64,9 @@ class ImpedanceRow(Section):
         "Whether the impedance is a guaranteed or a measured value.", REPORT, default="guaranteed"
     )
     tolerance: Tolerance | None = key(
-        "Tolerance; the duty is also run at impedance (1 - tolerance).", "order specification or standard", default=None
+        "Tolerance; the duty is also run at impedance (1 - tolerance).",
+        "order specification or standard",
+        default=None,
     )
 
     @property

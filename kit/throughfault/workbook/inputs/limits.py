@@ -6,8 +6,10 @@ from typing import Annotated, Any
 
 from throughfault.errors import QuantityError, did_you_mean
 from throughfault.quantities import UNITS, Quantity, parse, shown
-from throughfault.workbook.inputs.leaves import LARGEST, NUMBER_PATTERN, Leaf, Match, Number, Refused, Title, key
+from throughfault.workbook.inputs.leaves import Leaf, Match, Number, Refused
+from throughfault.workbook.inputs.measures import LARGEST, NUMBER_PATTERN
 from throughfault.workbook.inputs.section import Section
+from throughfault.workbook.inputs.vocabulary import Title, key
 
 RESULT_ID = re.compile(r"[a-z]+(\.[A-Za-z0-9_-]{1,64}){1,4}")
 _UNIT = re.compile(r"[0-9.]\s*([A-Za-z%].*)", re.ASCII)
@@ -59,7 +61,12 @@ class AnyQuantity(Leaf):
     def schema(self) -> dict[str, Any]:
         """Give number or text."""
         units = "|".join(re.escape(unit) for unit in UNITS) + ("|Rp0\\.2" if self.proof_stress else "")
-        return {"anyOf": [{"type": "number"}, {"type": "string", "pattern": rf"^\s*{NUMBER_PATTERN}\s*({units})\s*$"}]}
+        return {
+            "anyOf": [
+                {"type": "number"},
+                {"type": "string", "pattern": rf"^\s*{NUMBER_PATTERN}\s*({units})\s*$"},
+            ]
+        }
 
 
 ResultId = Annotated[str, Match(RESULT_ID, 'a result id such as "duty.LV.peak"')]

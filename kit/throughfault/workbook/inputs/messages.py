@@ -52,7 +52,10 @@ def faults_of(error: ValidationError) -> Iterator[Fault]:
         elif entry["type"] == "refused":
             yield Fault(path, f"{str(entry['msg']).removesuffix('.')}{_source(location)}.")
         elif entry["type"] == "too_short":
-            yield Fault(path, f"must have at least {entry['ctx']['min_length']} entries, got {entry['ctx']['actual_length']}.")
+            yield Fault(
+                path,
+                f"must have at least {entry['ctx']['min_length']} entries, got {entry['ctx']['actual_length']}.",
+            )
         else:  # a table or an array of tables was wanted
             yield Fault(path, f"must be {_wanted(location)}, got {shown(entry['input'])}.")
 
@@ -77,7 +80,11 @@ def _wanted(location: KeyPath) -> str:
     leaf, field = _leaf(location), _field(location)
     if leaf is not None:
         return leaf.wanted
-    if field is not None and get_origin(_plain(field.annotation)) is tuple and not isinstance(location[-1], int):
+    if (
+        field is not None
+        and get_origin(_plain(field.annotation)) is tuple
+        and not isinstance(location[-1], int)
+    ):
         return f"an array of tables [[{path_text(_file_path(location))}]]"
     return "a table"
 

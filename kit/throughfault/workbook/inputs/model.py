@@ -2,15 +2,17 @@
 
 from typing import Annotated, Literal
 
+from throughfault.quantities import Quantity
 from throughfault.workbook.inputs.design import Design
 from throughfault.workbook.inputs.hole import HoleMetError
 from throughfault.workbook.inputs.impedances import ImpedanceRow, ZeroSequence
-from throughfault.workbook.inputs.leaves import Name, OneOf, key
+from throughfault.workbook.inputs.leaves import OneOf
 from throughfault.workbook.inputs.limits import Declared, Limit, ResultId
 from throughfault.workbook.inputs.rating import FORMAT, Identity, Rating, Standard
 from throughfault.workbook.inputs.section import Section
 from throughfault.workbook.inputs.system import Earthing, System, Withstand
 from throughfault.workbook.inputs.vector_group import VectorGroup, WindingConnection, parse_vector_group
+from throughfault.workbook.inputs.vocabulary import Name, key
 from throughfault.workbook.inputs.windings import PRINCIPAL, Winding
 
 
@@ -64,3 +66,8 @@ class UnitFile(Section):
         for winding in self.windings.values():
             names.update(dict.fromkeys(winding.tappings))
         return tuple(names)
+
+    def voltage(self, winding: str, tapping: str = PRINCIPAL) -> Quantity:
+        """Return the winding's voltage at a tapping (its rated voltage where it has no such tapping)."""
+        found = self.windings[winding]
+        return found.tappings.get(tapping, found.rated_voltage)

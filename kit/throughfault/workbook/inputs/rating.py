@@ -5,31 +5,30 @@ from dataclasses import dataclass
 from typing import Annotated, Any, Literal
 
 from throughfault.errors import UnitFileError
-from throughfault.workbook.inputs.leaves import (
+from throughfault.workbook.inputs.leaves import Leaf, Match, OneOf, Refused
+from throughfault.workbook.inputs.section import Section
+from throughfault.workbook.inputs.vector_group import parse_vector_group
+from throughfault.workbook.inputs.vocabulary import (
     ORDER,
     PLATE,
-    REVISION,
-    TAG,
     Class,
     Duration,
     Frequency,
-    Leaf,
-    Match,
-    OneOf,
     Power,
-    Refused,
     Temperature,
     Title,
     Yes,
     key,
 )
-from throughfault.workbook.inputs.section import Section
-from throughfault.workbook.inputs.vector_group import parse_vector_group
 
+TAG = re.compile(r"[A-Za-z0-9][A-Za-z0-9._-]{0,63}")
+REVISION = re.compile(r"[A-Za-z0-9][A-Za-z0-9._]{0,63}")
 STANDARD = re.compile(r"IEC 60076-5(:[0-9]{4})?|IEEE C57\.12\.00(-[0-9]{4})?")
 FORMAT = "throughfault-unit/1"
 TAG_FORM = 'a tag such as "BV-T1": at most 64 letters, digits and ". _ -", first a letter or digit'
-Standard = Annotated[str, Match(STANDARD, '"IEC 60076-5" or "IEEE C57.12.00", an edition may follow (":2006", "-2015")')]
+Standard = Annotated[
+    str, Match(STANDARD, '"IEC 60076-5" or "IEEE C57.12.00", an edition may follow (":2006", "-2015")')
+]
 
 
 @dataclass(frozen=True)
@@ -75,7 +74,9 @@ class Identity(Section):
 class Rating(Section):
     """The unit as a whole."""
 
-    phases: Annotated[Literal[1, 3], OneOf((1, 3))] = key("Phases of the unit; 1 for each unit of a bank.", PLATE)
+    phases: Annotated[Literal[1, 3], OneOf((1, 3))] = key(
+        "Phases of the unit; 1 for each unit of a bank.", PLATE
+    )
     frequency: Frequency = key("Rated frequency.", PLATE)
     vector_group: Annotated[str, VectorGroupSymbol()] = key(
         "Vector group (IEC 60076-1), high voltage first; that of the bank for a bank.", PLATE
@@ -89,10 +90,12 @@ class Rating(Section):
     ] = key("Form of the core; decides the zero-sequence path.", "maker's outline or design sheet")
     bank: Yes = key("Single-phase units forming a three-phase bank.", PLATE, default=False)
     thermal_class: Class | None = key(
-        "Temperature class of the winding insulation in degC; may also stand per winding.", PLATE, default=None
+        "Temperature class of the winding insulation in degC; may also stand per winding.",
+        PLATE,
+        default=None,
     )
     start_temperature: Temperature | None = key(
-        "Temperature when the fault begins: IEC mean of the winding, IEEE its hottest spot; may also stand per winding.",
+        "Temperature when the fault begins: IEC mean, IEEE hottest spot; may also stand per winding.",
         "standard or type test report",
         default=None,
     )

@@ -3,7 +3,10 @@
 from typing import Annotated
 
 from throughfault.quantities import Quantity
-from throughfault.workbook.inputs.leaves import (
+from throughfault.workbook.inputs.leaves import Number
+from throughfault.workbook.inputs.measures import Measure
+from throughfault.workbook.inputs.section import Section
+from throughfault.workbook.inputs.vocabulary import (
     DESIGN,
     ORDER,
     PLATE,
@@ -11,16 +14,13 @@ from throughfault.workbook.inputs.leaves import (
     Class,
     Duration,
     Material,
-    Measure,
     Name,
-    Number,
     Power,
     Temperature,
     Voltage,
     Yes,
     key,
 )
-from throughfault.workbook.inputs.section import Section
 
 PRINCIPAL = "principal"
 
@@ -33,7 +33,9 @@ class Winding(Section):
     """
 
     rated_power: Power = key("Rated power of the winding.", PLATE)
-    rated_voltage: Voltage = key("Rated voltage, line to line (single-phase unit: across the winding).", PLATE)
+    rated_voltage: Voltage = key(
+        "Rated voltage, line to line (single-phase unit: across the winding).", PLATE
+    )
     highest_voltage: Voltage | None = key("Highest voltage for equipment, Um.", PLATE, default=None)
     conductor_material: Material | None = key("Material of the conductor.", DESIGN, default=None)
     conductor_section: Area | None = key(
@@ -43,7 +45,10 @@ class Winding(Section):
         in_words="from [design], where its coils give it",
     )
     stabilising: Yes = key(
-        'Terminals not brought out (or "+d" in the vector group).', PLATE, default=False, in_words="as the vector group"
+        'Terminals not brought out (or "+d" in the vector group).',
+        PLATE,
+        default=False,
+        in_words="as the vector group",
     )
     eddy_share: Annotated[float, Number(most=5.0, least_allowed=True)] = key(
         "Winding eddy loss over d.c. loss at reference temperature.", DESIGN, default=0.0
@@ -58,5 +63,9 @@ class Winding(Section):
         in_words="principal only",
     )
     thermal_class: Class | None = key("As rating.thermal_class.", PLATE, default=None, in_words="as [rating]")
-    start_temperature: Temperature | None = key("As rating.start_temperature.", default=None, in_words="as [rating]")
-    fault_duration: Duration | None = key("As rating.fault_duration.", ORDER, default=None, in_words="as [rating]")
+    start_temperature: Temperature | None = key(
+        "As rating.start_temperature.", default=None, in_words="as [rating]"
+    )
+    fault_duration: Duration | None = key(
+        "As rating.fault_duration.", ORDER, default=None, in_words="as [rating]"
+    )

@@ -1,0 +1,117 @@
+"""Contradictions of limits and declared results with the results they name."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+
+from throughfault.errors import did_you_mean
+from throughfault.quantities import UNITS, Quantity
+from throughfault.workbook.inputs.limits import ProofStressShare
+from throughfault.workbook.inputs.lines import KeyPath
+from throughfault.workbook.inputs.messages import Fault
+from throughfault.workbook.inputs.model import UnitFile
+
+#: families of results, and whether their second part names a winding, a coil or something else
+FAMILIES = {
+    "duty": "winding",
+    "thermal": "winding or coil",
+    "field": "coil or pair",
+    "force": "coil",
+    "strength": "coil",
+    "dynamic": "coil",
+    "test": "",
+    "similar": "",
+    "spread": "",
+    "headroom": "",
+}
+#: last part of an id -> kind of quantity
+KINDS_OF_RESULTS = {
+    **dict.fromkeys(
+        ("symmetrical", "peak", "peak_exact", "terminal_symmetrical", "terminal_peak"), "current"
+    ),
+    "density": "current density",
+    "temperature": "temperature",
+    "reactance": "ratio",
+    **dict.fromkeys(("axial_flux", "radial_flux"), "flux density"),
+    **dict.fromkeys(
+        (
+            "radial", "radial_outward", "radial_inward", "compression", "thrust_up", "thrust_down", "tilting",
+            "end_force",
+        ),
+        "force",
+    ),
+    **dict.fromkeys(
+        (
+            "hoop_mean", "hoop", "hoop_tension", "hoop_compression", "radial_bending", "axial_bending", "spacer",
+            "ring", "ties",
+        ),
+        "stress",
+    ),
+    "buckling": "number",
+    "frequency": "frequency",
+}  # fmt: skip
+_SUFFIXES = ("_envelope", "_redistributed")
+
+
+def declared_results(file: UnitFile) -> Iterator[Fault]:
+    """Compare declared ids and units."""
+    for result, quantity in file.declared.items():
+        path = ("declared", result)
+        yield from _known(file, result, path)
+        yield from _fitting(result, quantity, path)
+
+
+def limits(file: UnitFile) -> Iterator[Fault]:
+    """Compare ids and units of limits."""
+    for result, limit in file.limits.items():
+        path = ("limits", result)
+        yield from _known(file, result, path)
+        if isinstance(limit.value, Quantity):
+            yield from _fitting(result, limit.value, (*path, "value"))
+        elif isinstance(limit.value, ProofStressShare) and _kind(result) not in {"stress", None}:
+            text = f"is a share of Rp0.2, but '{result}' is of kind {_kind(result)}."
+            yield Fault((*path, "value"), text)
+
+
+def _known(file: UnitFile, result: str, path: KeyPath) -> Iterator[Fault]:
+    family, name = result.split(".")[:2]
+    if family not in FAMILIES:
+        known = ", ".join(FAMILIES)
+        yield Fault(path, f"is not a result: '{family}' is none of {known}{did_you_mean(family, FAMILIES)}.")
+        return
+    names = _names(file, FAMILIES[family])
+    if names and name not in names and not (family == "strength" and name == "clamping"):
+        wanted = FAMILIES[family]
+        yield Fault(path, f"is not a result: '{name}' is not a {wanted}{did_you_mean(name, names)}.")
+
+
+def _names(file: UnitFile, wanted: str) -> list[str]:
+    """Return the names that may stand second in an id; none where that cannot be told."""
+    windings = list(file.windings)
+    coils = [coil.name for coil in file.design.coils] if file.design is not None else windings
+    return {
+        "winding": [*windings, "neutral"],
+        "winding or coil": [*windings, *coils],
+        "coil": coils,
+        "coil or pair": [*coils, *(f"{a}-{b}" for i, a in enumerate(windings) for b in windings[i + 1 :])],
+    }.get(wanted, [])
+
+
+def _kind(result: str) -> str | None:
+    if result.startswith("duty.neutral."):
+        return "current"
+    last = result.rsplit(".", 1)[-1]
+    for suffix in _SUFFIXES:
+        last = last.removesuffix(suffix)
+    return KINDS_OF_RESULTS.get(last)
+
+
+def _fitting(result: str, quantity: Quantity, path: KeyPath) -> Iterator[Fault]:
+    kind = _kind(result)
+    if kind is not None and quantity.kind != kind:
+        units = ", ".join(unit for unit, (k, _) in UNITS.items() if k == kind)
+        wanted = "a bare number" if kind == "number" else f"a {kind} (unit one of {units})"
+        yield Fault(path, f"must be {wanted} for '{result}', got {quantity}.")
+
+
+RESULT_CHECKS = (declared_results, limits)
