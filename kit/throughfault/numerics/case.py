@@ -123,6 +123,8 @@ class Cases:
             "fault_impedance": fault_impedance, "step": step,
         }  # fmt: skip
         cases = cls(**_broadcast(given, len(transformer.windings)))
+        if outside := _outside(cases, len(transformer.windings)):
+            raise NetworkError(outside)
         if prefault is None:
             phase = cases.at_fault(cases.voltage) / np.sqrt(transformer.phases)
             cases = cls(**{**cases._columns(), "prefault": phase})
@@ -173,14 +175,17 @@ def _broadcast(given: dict[str, Any], windings: int) -> dict[str, Any]:
         raise NetworkError(message) from error
 
 
+def _outside(cases: Cases, windings: int) -> str:
+    wrong = (cases.at < 0) | (cases.at >= windings)
+    if not wrong.any():
+        return ""
+    return f"at of case {wrong.argmax()} must be a winding from 0 to {windings - 1}, got {cases.at[wrong][0]}"
+
+
 def _faults(transformer: Transformer, cases: Cases) -> list[str]:
     """All faults of the values, each naming the first case that has it."""
-    windings = len(transformer.windings)
     kinds = KINDS if transformer.phases == 3 else (LINE_LINE, OUT_OF_PHASE)
-    outside = (cases.at < 0) | (cases.at >= windings)
-    if outside.any():
-        return [f"at of case {outside.argmax()} must be a winding from 0 to {windings - 1}, got {cases.at[outside][0]}"]
-    pairs = ~np.eye(windings, dtype=bool)
+    pairs = ~np.eye(len(transformer.windings), dtype=bool)
     source, closing = cases.at_fault(cases.source_z1), cases.fault == OUT_OF_PHASE
     checks = {
         f"fault must be one of {', '.join(kinds)}": ~np.isin(cases.fault, kinds),

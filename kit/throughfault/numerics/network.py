@@ -74,7 +74,7 @@ class Solution:
     z1, z2, z0
         [case] impedance of the whole network at the faulted port, ohm; infinite where no current can flow.
     driving_point
-        [case] z1 (3ph), z1 + z2 (LL), z1 + z2 + z0 (LG), z1 + z2 z0 / (z2 + z0) (LLG), with the fault impedance, ohm.
+        [case] z1 (3ph, one phase), z1 + z2 (LL), z1 + z2 + z0 (LG), z1 + z2 z0 / (z2 + z0) (LLG), with the fault impedance, ohm.
     path_exists
         [case] whether the fault, with earth where the kind says so, closes a path.
     """
@@ -139,7 +139,7 @@ def solve(transformer: Transformer, cases: Cases) -> Solution:
     coil, terminal, neutral = split(transformer, observed)
     first = [index for index, each in enumerate(transformer.coils) if each.half == 0]
     z1, z2, z0 = _sequence_impedance(admittance)
-    driving = _driving_point(cases, z1, z2, z0)
+    driving = _driving_point(cases, z1, z2 if phases == 3 else np.zeros_like(z1), z0)
     return Solution(coil, coil[:, first], terminal, neutral, port, z1, z2, z0, driving, exists)
 
 
