@@ -142,6 +142,9 @@ class RuleSet(Protocol):
     def start_temperature(self, immersion: str) -> Tabled:
         """Return the temperature in degC when the fault begins, where none is given."""
 
+    def reference_temperature(self, immersion: str) -> Tabled:
+        """Return the temperature in degC that eddy shares and losses refer to."""
+
     def temperature_limit(self, material: str, immersion: str, thermal_class: float | None) -> LimitOrReason:
         """Return the highest permitted temperature."""
 

@@ -139,6 +139,13 @@ class Iec60076Part5:
         source = "IEC60076-5:2006, 4.1.5"
         return Tabled(None, "degC", source, "recalled", "H", "ambient and rated rise belong to the unit")
 
+    def reference_temperature(self, immersion: str) -> Tabled:
+        """Return the reference temperature of liquid-immersed units."""
+        rows = table("iec60076_1_2011_reference_temperature")
+        if immersion != rows.rows[0]["immersion"]:
+            return Tabled.of(rows, None, "degC", "the reference temperature of dry-type units is not tabled")
+        return Tabled.of(rows, rows.rows[0]["temperature"], "degC")
+
     def temperature_limit(self, material: str, immersion: str, thermal_class: float | None) -> LimitOrReason:
         """Return the limit of the average winding temperature; oil without a class counts as its only class."""
         rows = table("iec60076_5_2006_temperature_limit")

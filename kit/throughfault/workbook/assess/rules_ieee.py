@@ -129,6 +129,13 @@ class IeeeC57Part12:
             return Tabled.of(rows, None, "degC", "the defaults hold for liquid-immersed units")
         return Tabled.of(rows, max(rows.column("temperature")), "degC", "default for the higher rated rise")
 
+    def reference_temperature(self, immersion: str) -> Tabled:
+        """Return the reference temperature of the higher rated rise, which gives the greater eddy loss."""
+        rows = table("ieee_c57_12_00_2015_start_temperature")
+        if immersion != "oil":
+            return Tabled.of(rows, None, "degC", "the reference temperature of dry-type units is not tabled")
+        return Tabled.of(rows, max(rows.column("reference_temperature")), "degC", "for the higher rated rise")
+
     def temperature_limit(self, material: str, immersion: str, thermal_class: float | None) -> LimitOrReason:
         """Return the limit of the conductor temperature; dry-type by the companion standard's classes."""
         if immersion == "oil":
