@@ -172,5 +172,5 @@ def table(
         body = joined(_cells(made, row) for row in group)
         bodies.append(Markup("<tbody>{}{}</tbody>\n").format(title if heading else "", body))
     return Markup(
-        '<table class="{}"><caption>{}</caption><thead><tr>{}</tr></thead>\n{}</table>\n'
+        '<div class="scroll"><table class="{}"><caption>{}</caption><thead><tr>{}</tr></thead>\n{}</table></div>\n'
     ).format(kind, caption, head, joined(bodies))  # fmt: skip

@@ -1,0 +1,18 @@
+"""The record: one HTML page that opens without network or script, made from an executed notebook."""
+
+from throughfault.render.record.exporter import RecordExporter, export_record
+from throughfault.render.record.lint import lint
+from throughfault.render.record.lookup import data_ids, lookup, loose_digits, unresolved
+from throughfault.render.record.normalise import normalise, notebook_text
+
+__all__ = [
+    "RecordExporter",
+    "data_ids",
+    "export_record",
+    "lint",
+    "lookup",
+    "loose_digits",
+    "normalise",
+    "notebook_text",
+    "unresolved",
+]
