@@ -190,6 +190,11 @@ def _balance(given: dict[str, Any], got: float) -> float:
     return abs(_once_more(got, given) / got - 1.0)
 
 
+def _balance_when_hot(given: dict[str, Any], _: float) -> float:
+    hot = {**given, "current_density": 110.0}
+    return _balance(hot, float(final_temperature_all_heat_stored(**hot)))
+
+
 EXAMPLE = {
     "material": "copper", "start_temperature": 110.0, "current_density": 70.0, "duration": 2.0, "eddy_share": 0.08,
     "reference_temperature": 85.0, "insulation_section": 40.0, "conductor_section": 62.0,
@@ -204,9 +209,7 @@ EXAMPLE = {
         Equation(r"T_f=(T_k+T_s)\,m\,(1+e+0.6\,m)+T_s\quad(m\le 0.6)", _balance),
         Equation(
             r"T_f=(T_k+T_s)\left[\sqrt{e^{2m}+e\,(e^{2m}-1)}-1\right]+T_s\quad(m>0.6)",
-            lambda given, _: _balance(
-                hot := {**given, "current_density": 110.0}, final_temperature_all_heat_stored(**hot)
-            ),
+            _balance_when_hot,
         ),
     ),
     example=lambda: dict(EXAMPLE),
