@@ -302,6 +302,20 @@ def test_nothing_else_is_cleared(bench, contents):
     assert not (record / "signatures/03-witness.sig").exists()  # its bytes were those of the interrupted signing
 
 
+def test_journal_of_another_state_takes_nothing_back(bench):
+    """A left journal that disagrees with the present SHA256SUMS about any other file says nothing about a pair."""
+    record, _ = bench.signed()
+    for ending in ("json", "sig"):
+        (record / f"signatures/03-witness.{ending}").write_text("mine")
+    leave_journal(record, ["signatures/03-witness.json", "signatures/03-witness.sig"])
+    journal = record / f"{TEMPORARY}{SUMS}"
+    journal.write_text("0" * 64 + journal.read_text()[64:])
+    with pytest.raises(RecordError):
+        sign(record, "witness", bench.key("cyd").path, "Cyd")
+    assert (record / "signatures/03-witness.json").read_text() == "mine"
+    assert (record / "signatures/03-witness.sig").read_text() == "mine"
+
+
 def test_lost_sums_do_not_cost_signatures(bench):
     """Where SHA256SUMS is gone, a left journal takes no signature back."""
     record, _ = bench.signed()
