@@ -6,6 +6,7 @@ from collections.abc import Iterator, Mapping
 from typing import Any
 
 from throughfault.quantities import Quantity
+from throughfault.workbook.inputs.design_data import line_voltage
 from throughfault.workbook.inputs.lines import KeyPath, path_text
 from throughfault.workbook.inputs.model import UnitFile
 from throughfault.workbook.inputs.section import Section
@@ -16,6 +17,10 @@ __all__ = ["defaults_used"]
 
 #: optional keys whose absence means "none", nothing is assumed for them
 _NONE: tuple[Any, ...] = ((), {}, None)
+
+
+#: keys of a winding that another key or table stands for
+_OF_WINDING = ("thermal_class", "start_temperature", "fault_duration", "stabilising")
 
 
 def defaults_used(file: UnitFile) -> tuple[Default, ...]:
@@ -32,7 +37,7 @@ def _of(section: Section, path: KeyPath) -> Iterator[Default]:
             yield from _inside(value, path if name == "terminals" else where)
         elif isinstance(value, Section):
             yield from _of(value, where)
-        elif value not in _NONE:
+        elif value not in _NONE and not _follows(section, name):
             yield Default(path_text(where), _shown(value))
         elif words and not _follows(section, name):
             yield Default(path_text(where), words)
@@ -58,7 +63,7 @@ def _follows(section: Section, name: str) -> bool:
         return getattr(section, "short_circuit_power", None) != "table"
     if name in {"x_over_r", "x0_over_x1"}:
         return "short_circuit_power" not in given
-    if isinstance(section, Winding) and name in {"thermal_class", "start_temperature", "fault_duration"}:
+    if isinstance(section, Winding) and name in _OF_WINDING:
         return True
     return name in {"voltage", "earthing", "strands", "tappings", "zero_sequence", "conductor_section"}
 
@@ -67,7 +72,14 @@ def _settled(file: UnitFile) -> Iterator[Default]:
     """Yield the defaults that take their value from other keys."""
     for name, source in file.system.terminals.items():
         if source.voltage is None:
-            yield Default(f"system.{name}.voltage", file.windings[name].rated_voltage)
+            yield Default(f"system.{name}.voltage", line_voltage(file, name))
+    for name, connection in list(file.connections.items())[1:]:
+        if (
+            connection.letter == "D"
+            and not connection.stabilising
+            and "stabilising" not in file.windings[name].model_fields_set
+        ):
+            yield Default(f"windings.{name}.stabilising", "false")
     for name, connection in file.connections.items():
         if connection.neutral and name not in file.earthing:
             yield Default(f"earthing.{name}", "solid")

@@ -41,7 +41,7 @@ class ImpedanceRow(Section):
     between: Annotated[tuple[str, str], TwoNames()] = key("The two windings, in either order.", REPORT)
     tapping: Name = key("Tapping the row holds for.", REPORT, default=PRINCIPAL)
     impedance: Percent = key("Short-circuit impedance, its magnitude.", REPORT)
-    base_power: Power = key("Power the per cent values refer to.", REPORT)
+    base_power: Power = key("Power the per cent values refer to; of a bank that of one unit.", REPORT)
     load_loss: Loss | None = key(
         "Load loss at base power and reference temperature; or resistance.", TEST, default=None
     )

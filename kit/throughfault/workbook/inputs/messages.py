@@ -2,17 +2,16 @@
 
 from __future__ import annotations
 
-import types
 from collections.abc import Iterable, Iterator
 from dataclasses import dataclass
-from typing import Any, Union, get_args, get_origin
+from typing import Any, get_args, get_origin
 
 from pydantic import ValidationError
 from pydantic.fields import FieldInfo
 
 from throughfault.errors import did_you_mean
 from throughfault.quantities import shown
-from throughfault.workbook.inputs.leaves import Leaf
+from throughfault.workbook.inputs.annotations import leaf_of, plain_type
 from throughfault.workbook.inputs.lines import KeyPath, line_of, path_text
 from throughfault.workbook.inputs.model import UnitFile
 from throughfault.workbook.inputs.section import Section
@@ -77,12 +76,13 @@ def _unknown(location: KeyPath) -> str:
 
 
 def _wanted(location: KeyPath) -> str:
-    leaf, field = _leaf(location), _field(location)
+    field = _field(location)
+    leaf = leaf_of(field) if field is not None else None
     if leaf is not None:
         return leaf.wanted
     if (
         field is not None
-        and get_origin(_plain(field.annotation)) is tuple
+        and get_origin(plain_type(field.annotation)) is tuple
         and not isinstance(location[-1], int)
     ):
         return f"an array of tables [[{path_text(_file_path(location))}]]"
@@ -94,34 +94,6 @@ def _source(location: KeyPath) -> str:
     extra = field.json_schema_extra if field is not None else None
     source = extra.get("source") if isinstance(extra, dict) else ""
     return f"; source: {source}" if source else ""
-
-
-def _leaf(location: KeyPath) -> Leaf | None:
-    field = _field(location)
-    if field is None:
-        return None
-    annotation: Any = field.annotation
-    candidates = [*field.metadata, *_metadata(annotation)]
-    return next((item for item in candidates if isinstance(item, Leaf)), None)
-
-
-def _metadata(annotation: Any) -> Iterator[Any]:
-    """Yield what is annotated on a type or on the members of its union."""
-    if hasattr(annotation, "__metadata__"):
-        yield from annotation.__metadata__
-    elif get_origin(annotation) in (Union, types.UnionType):
-        for member in get_args(annotation):
-            yield from _metadata(member)
-
-
-def _plain(annotation: Any) -> Any:
-    """Return the type without its notes and without None."""
-    if hasattr(annotation, "__metadata__"):
-        return _plain(annotation.__origin__)
-    if get_origin(annotation) in (Union, types.UnionType):
-        members = [member for member in get_args(annotation) if member is not type(None)]
-        return _plain(members[0]) if len(members) == 1 else annotation
-    return annotation
 
 
 def _field(location: KeyPath) -> FieldInfo | None:
@@ -139,8 +111,8 @@ def _section(location: KeyPath) -> type[Section] | None:
     for part in location:
         if isinstance(current, type) and issubclass(current, Section):
             field = current.model_fields.get(str(part))
-            current = _plain(field.annotation) if field is not None else None
+            current = plain_type(field.annotation) if field is not None else None
         else:  # an entry of a dict or a row of a tuple
             inner = [a for a in get_args(current) if a is not Ellipsis]
-            current = _plain(inner[-1]) if inner else None
+            current = plain_type(inner[-1]) if inner else None
     return current if isinstance(current, type) and issubclass(current, Section) else None

@@ -7,6 +7,7 @@ from collections.abc import Iterator
 
 from throughfault.declare import OpenPoint
 from throughfault.quantities import Quantity
+from throughfault.workbook.inputs.design_data import line_voltage
 from throughfault.workbook.inputs.open_points_design import DESIGN_POINTS
 from throughfault.workbook.inputs.unit import Unit
 
@@ -90,7 +91,7 @@ def resistance_of_rows(unit: Unit) -> Iterator[OpenPoint]:
 def sources(unit: Unit) -> Iterator[OpenPoint]:
     """Find unusual sources, and a unit without any."""
     for name, source in unit.system.terminals.items():
-        rated = unit.windings[name].rated_voltage
+        rated = line_voltage(unit, name)
         if (
             source.x_over_r is not None
             and not USUAL_SOURCE_X_OVER_R[0] <= source.x_over_r <= USUAL_SOURCE_X_OVER_R[1]
@@ -102,7 +103,7 @@ def sources(unit: Unit) -> Iterator[OpenPoint]:
             source.voltage is not None
             and abs(source.voltage.to("V") / rated.to("V") - 1.0) > USUAL_VOLTAGE_DIFFERENCE
         ):
-            text = f"The network at {name} is stated at {{voltage}}, the winding is rated {{rated}}."
+            text = f"The network at {name} is stated at {{voltage}}, its terminals are rated {{rated}}."
             yield OpenPoint(f"input.system.{name}.voltage", text, {"voltage": source.voltage, "rated": rated})
     if all(source.short_circuit_power is None for source in unit.system.terminals.values()):
         text = "No terminal has a network behind it ([system.<winding>] with short_circuit_power)."

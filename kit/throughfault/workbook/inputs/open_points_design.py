@@ -20,7 +20,10 @@ def turns_off(unit: Unit, design: Design) -> Iterator[OpenPoint]:
     """Find turns that follow the voltages only roughly."""
     for name, reference, tapping, off in turn_deviations(unit, design):
         if abs(off) > NOTED_TURNS:
-            text = f"The turns of {name} over {reference} at tapping '{tapping}' are {{off}} off the ratio of the voltages."
+            text = (
+                f"The turns of {name} over {reference} at tapping '{tapping}' are {{off}} off "
+                "the ratio of the voltages."
+            )
             yield OpenPoint(f"input.{name}.{tapping}.turns", text, {"off": Quantity(100.0 * off, "%")})
 
 
@@ -29,11 +32,12 @@ def build_filled(_unit: Unit, design: Design) -> Iterator[OpenPoint]:
     for coil in design.coils:
         fill = radial_fill(coil)
         if not USUAL_FILL[0] <= fill <= USUAL_FILL[1]:
-            text = f"The covered conductors of coil {coil.name} fill {{fill}} of its radial build; usual are {{least}} to {{most}}."
-            values = {
-                n: Quantity(100.0 * v, "%")
-                for n, v in zip(("fill", "least", "most"), (fill, *USUAL_FILL), strict=True)
-            }
+            text = (
+                f"The covered conductors of coil {coil.name} fill {{fill}} of its radial build; "
+                "usual are {least} to {most}."
+            )
+            least, most = (Quantity(100.0 * bound, "%") for bound in USUAL_FILL)
+            values = {"fill": Quantity(100.0 * fill, "%"), "least": least, "most": most}
             yield OpenPoint(f"input.{coil.name}.fill", text, values, "common practice")
 
 

@@ -28,7 +28,10 @@ class Source(Section):
     """The network behind one terminal."""
 
     voltage: Voltage | None = key(
-        "Voltage the fault level is stated at.", NETWORK, default=None, in_words="rated_voltage"
+        "Line-to-line voltage the fault level is stated at.",
+        NETWORK,
+        default=None,
+        in_words="rated_voltage, line to line",
     )
     short_circuit_power: Annotated[Quantity | Literal["table"] | None, Either(Measure("MVA"), ("table",))] = (
         key(
@@ -70,10 +73,12 @@ class Source(Section):
 class System(Section):
     """The networks; in the file the terminals stand beside ``prefault_voltage`` as [system.HV] and so on."""
 
-    prefault_voltage: Annotated[float | dict[str, float], ByTapping(Number(0.5, 1.5))] = key(
-        "Voltage before the fault, per unit of the tapping's voltage; may be a table by tapping.",
-        NETWORK,
-        default=1.0,
+    prefault_voltage: Annotated[float | dict[str, float], ByTapping(Number(0.5, 1.5, least_allowed=True))] = (
+        key(
+            "Voltage before the fault, per unit of the tapping's voltage; may be a table by tapping.",
+            NETWORK,
+            default=1.0,
+        )
     )
     terminals: dict[Name, Source] = key("One table for each terminal with a network behind it.", default={})
 

@@ -32,9 +32,11 @@ class Winding(Section):
     sections and coils; ``rated_voltage`` is that of the terminal.
     """
 
-    rated_power: Power = key("Rated power of the winding.", PLATE)
+    rated_power: Power = key("Rated power of the winding; of a bank that of one unit.", PLATE)
     rated_voltage: Voltage = key(
-        "Rated voltage, line to line (single-phase unit: across the winding).", PLATE
+        "Rated voltage as on the plate: line to line; of a single-phase unit, also in a bank, that of its "
+        "winding (in a star the line voltage over root three, IEC 60076-1).",
+        PLATE,
     )
     highest_voltage: Voltage | None = key("Highest voltage for equipment, Um.", PLATE, default=None)
     conductor_material: Material | None = key("Material of the conductor.", DESIGN, default=None)

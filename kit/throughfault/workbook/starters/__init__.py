@@ -1,0 +1,1 @@
+"""Unit files to start from, one for each kind of transformer."""
