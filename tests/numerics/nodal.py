@@ -107,7 +107,9 @@ def solve_nodal(group, case):
     """Return coil currents [coil, limb], neutral currents and fault branch currents of one case."""
     windings, coils = WOUND[group]
     flat = [pair for coil in coils for pair in coil]
-    names = sorted({node for pair in flat for node in pair} | {"N", "n"} | {"F"} | {f"s{w}" for w in range(len(windings))})
+    names = sorted(
+        {node for pair in flat for node in pair} | {"N", "n"} | {"F"} | {f"s{w}" for w in range(len(windings))}
+    )
     number = {name: i for i, name in enumerate(names)}
     incidence = np.zeros((len(names), len(flat)))
     for k, (start, end) in enumerate(flat):

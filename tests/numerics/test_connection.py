@@ -67,12 +67,24 @@ def test_three_phase_currents_turn_by_the_clock_number(high, low, clock):
         ((("Y", 0), ("D", 4)), 3, "winding W1: clock number 4 cannot be wound with D after Y"),
         ((("D", 0), ("Z", 11)), 3, "winding W1: clock number 11 cannot be wound with Z after D"),
         ((("Y", 1), ("Y", 0)), 3, "winding W0: the clock number of the first winding must be 0, got 1"),
-        ((("D", 0), ("A", 0)), 3, "winding W1: the common part of an autotransformer must stand second, after Y or I, with clock number 0"),
+        (
+            (("D", 0), ("A", 0)),
+            3,
+            "winding W1: the common part of an autotransformer must stand second, after Y or I, with clock number 0",
+        ),
         ((("Y", 0), ("Q", 0)), 3, "winding W1: connection must be one of Y, D, Z, A, I, got 'Q'"),
-        ((("Y", 0), ("I", 0)), 3, "winding W1: connection must be I or A in one phase and Y, D, Z or A in three, got I"),
+        (
+            (("Y", 0), ("I", 0)),
+            3,
+            "winding W1: connection must be I or A in one phase and Y, D, Z or A in three, got I",
+        ),
         ((("I", 0), ("I", 5)), 1, "winding W1: clock number 5 cannot be wound with I after I"),
         ((("Y", 0),), 3, "a transformer must have two windings or more, got 1"),
-        ((("Y", 0), ("Y", 3), ("D", 2)), 3, "winding W1: clock number 3 cannot be wound with Y after Y; winding W2: clock number 2 cannot be wound with D after Y"),
+        (
+            (("Y", 0), ("Y", 3), ("D", 2)),
+            3,
+            "winding W1: clock number 3 cannot be wound with Y after Y; winding W2: clock number 2 cannot be wound with D after Y",
+        ),
     ],
 )
 def test_what_cannot_be_wound_is_refused(windings, phases, message):

@@ -5,8 +5,8 @@ import re
 
 import numpy as np
 import pytest
-
 from tests.numerics.units import near, wound
+
 from throughfault.errors import NetworkError
 from throughfault.numerics import case as case_module
 from throughfault.numerics import connection, network, transient
@@ -16,6 +16,10 @@ from throughfault.numerics.impedance import magnetising_path
 from throughfault.numerics.network import solve
 
 PAIR = np.array([[0, 0.005 + 0.1j], [0.005 + 0.1j, 0]])
+ENDLESS = (
+    r"^case 0 or one like it \(3ph\) has a path without impedance through the fault; "
+    r"give sources, windings or the fault an impedance \(ohm\)$"
+)
 SINGLE = Transformer((Winding("HV", "I"), Winding("LV", "I")), 1)
 
 
@@ -142,6 +146,9 @@ def test_mixed_cases_are_solved_as_alone():
         ({"fault": "out_of_phase"}, "source_z1 must be finite where the source is switched on (ohm), unlike case 0"),
         ({"frequency": 0.0, "base_power": [1e6, 0.0]},
          "base_power must be finite and positive (VA), unlike case 1; frequency must be finite and positive (Hz), unlike case 0"),
+        ({"source_z1": [np.nan, np.inf], "neutral": [np.nan, 0.0], "magnetising": [0.5j, np.inf]},
+         ("source_z1, source_z2 and source_z0 must be numbers or infinite (ohm), unlike case 0; neutral must be a number or "
+         "infinite (ohm), unlike case 0; magnetising must be finite for all windings or infinite for all (per unit), unlike case 0")),
         ({"voltage": [33e3, 11e3, 1e3]},
          "arrays of the cases must share one leading axis and have 2 windings, got voltage (3,), z1 (2, 2), z0 (2, 2), source_z1 (2,), source_z2 (2,)"),
     ],
@@ -162,15 +169,23 @@ def test_earth_faults_are_refused_in_one_phase():
 
 def test_autotransformer_must_step_down():
     """The series part needs a voltage of its own."""
-    with pytest.raises(NetworkError, match=r"^voltage of an autotransformer must fall from HV to LV \(V\), unlike case 0$"):
+    with pytest.raises(
+        NetworkError, match=r"^voltage of an autotransformer must fall from HV to LV \(V\), unlike case 0$"
+    ):
         Cases.of(wound("YNa0"), voltage=[1.0, 1.0], base_power=1.0, z1=PAIR, fault="3ph", at=1, frequency=50)
 
 
 def test_path_without_impedance_is_refused():
     """An ideal source and windings without impedance leave nothing to hold the current."""
-    with pytest.raises(
-        NetworkError,
-        match=r"^case 0 or one like it \(3ph\) has a path without impedance through the fault; "
-        r"give sources, windings or the fault an impedance \(ohm\)$",
-    ):
+    with pytest.raises(NetworkError, match=ENDLESS):
         two("YNd11", "3ph", 1, z1=np.zeros((2, 2)), source_z1=[0.0, np.inf], source_z0=[0.0, np.inf])
+
+
+def test_path_without_impedance_is_found_beside_one_that_has_it():
+    """A second terminal's source with impedance does not hide the loop of the first, where only rounding is left."""
+    z = np.array([[0, 0, 0.1j], [0, 0, 0.1j], [0.1j, 0.1j, 0]])
+    unit = wound("YNyn0d11")
+    cases = Cases.of(unit, voltage=[132e3, 66e3, 11e3], base_power=40e6, z1=z, fault="3ph", at=1, frequency=50,
+                     source_z1=[0, 1j, 0.1j], source_z0=[0, 1j, 0.1j], neutral=[0, 0, 0])  # fmt: skip
+    with pytest.raises(NetworkError, match=ENDLESS):
+        solve(unit, cases)

@@ -2,9 +2,9 @@
 
 import numpy as np
 import pytest
-
 from tests.numerics.nodal import LINES, WOUND, coil_pairs, solve_nodal
 from tests.numerics.units import near, random_case, stack, wound
+
 from throughfault.numerics.impedance import magnetising_path
 from throughfault.numerics.network import solve
 
@@ -40,7 +40,9 @@ def test_every_current_of_random_networks_equals_nodal_analysis(group):
         size = max(np.abs(coil * volts).max(), case["base_power"])  # at least the rated volt-amperes
         assert np.abs((solution.coil_current[number] - coil) * volts).max() <= 1e-9 * size
         for terminal in (0, 1):
-            gap = (solution.terminal_current[number, terminal] - lines_of(coil, group, terminal)) * case["voltage"][terminal]
+            gap = (solution.terminal_current[number, terminal] - lines_of(coil, group, terminal)) * case["voltage"][
+                terminal
+            ]
             assert np.abs(gap).max() <= 1e-9 * size
         brought = [w for w, (x, _) in enumerate(WOUND[group][0]) if x in "YZ" and np.isfinite(case["neutral"][w])]
         gap = (solution.neutral_current[number, brought] - neutral) * case["voltage"][brought]
@@ -59,7 +61,11 @@ def test_magnetising_path_of_a_three_limb_core_equals_a_closed_zero_sequence_win
     for number, case in enumerate(cases):
         last = len(case["z0"])
         wider = np.zeros((last + 1, last + 1), complex)
-        wider[:last, :last], wider[last, :last], wider[:last, last] = case["z0"], case["magnetising"], case["magnetising"]
+        wider[:last, :last], wider[last, :last], wider[:last, last] = (
+            case["z0"],
+            case["magnetising"],
+            case["magnetising"],
+        )
         turned = coil_pairs_with_path(group, wider, case["voltage"])
         coil, _, _ = solve_nodal(group, {**case, "magnetising": turned})
         volts = case["voltage"][[c.winding for c in unit.coils]][:, None]

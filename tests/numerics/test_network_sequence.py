@@ -6,8 +6,8 @@ star, delta current from the balance of ampere-turns.
 
 import numpy as np
 import pytest
-
 from tests.numerics.units import near, stack, wound
+
 from throughfault.numerics.impedance import coil_voltages, magnetising_path
 from throughfault.numerics.network import solve
 
@@ -61,7 +61,12 @@ def run(group, voltage, z1, z0, fault, at, sources, neutral, **more):
         "voltage": voltage, "base_power": S, "z1": z1, "z0": z0, "fault": fault, "at": at, "frequency": 50.0,
         "prefault": voltage[at] / np.sqrt(3), "source_z1": s1, "source_z0": s0, "neutral": np.array(neutral) * ohm, **more,
     }  # fmt: skip
-    return unit, solve(unit, stack(unit, [case])), S / (np.sqrt(3) * voltage), S / 3 / coil_voltages(unit, voltage[None])[0]
+    return (
+        unit,
+        solve(unit, stack(unit, [case])),
+        S / (np.sqrt(3) * voltage),
+        S / 3 / coil_voltages(unit, voltage[None])[0],
+    )
 
 
 def three_winding(fault, at, neutral):

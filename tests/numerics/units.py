@@ -1,8 +1,8 @@
 """Invented transformers and cases that several test files use."""
 
 import numpy as np
-
 from tests.numerics.nodal import WOUND
+
 from throughfault.numerics.case import Cases
 from throughfault.numerics.connection import Transformer, Winding
 

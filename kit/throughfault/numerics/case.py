@@ -197,12 +197,23 @@ def _faults(transformer: Transformer, cases: Cases) -> list[str]:
         "z1 must be finite (per unit)": ~np.isfinite(cases.z1[:, pairs]).all(1),
         "z0 must be finite (per unit)": ~np.isfinite(cases.z0[:, pairs]).all(1),
         "z1 and z0 must be symmetric": _skew(cases.z1, pairs) | _skew(cases.z0, pairs),
+        "source_z1, source_z2 and source_z0 must be numbers or infinite (ohm)": np.any(
+            [_blank(z).any(1) for z in (cases.source_z1, cases.source_z2, cases.source_z0)], axis=0
+        ),
+        "neutral must be a number or infinite (ohm)": _blank(cases.neutral).any(1),
+        "magnetising must be finite for all windings or infinite for all (per unit)": ~(
+            np.isfinite(cases.magnetising).all(1) | np.isinf(cases.magnetising).all(1)
+        ),
         "source_z1 at the faulted terminal must not be zero (ohm)": (source == 0) & ~closing,
         "source_z1 must be finite where the source is switched on (ohm)": np.isinf(source) & closing,
     }
     if transformer.auto:
         checks["voltage of an autotransformer must fall from HV to LV (V)"] = cases.voltage[:, 0] <= cases.voltage[:, 1]
     return [f"{what}, unlike case {wrong.argmax()}" for what, wrong in checks.items() if wrong.any()]
+
+
+def _blank(z: Complexes) -> NDArray[np.bool_]:
+    return np.asarray(np.isnan(z) & ~np.isinf(z))
 
 
 def _skew(z: Complexes, pairs: NDArray[np.bool_]) -> NDArray[np.bool_]:

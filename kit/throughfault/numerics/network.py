@@ -52,6 +52,7 @@ from throughfault.numerics.loops import (
 __all__ = ["Group", "Solution", "groups", "observe", "solve", "split"]
 
 CHUNK = 1000
+ENDLESS = 1e12
 INFINITE = complex(np.inf)
 
 
@@ -74,7 +75,8 @@ class Solution:
     z1, z2, z0
         [case] impedance of the whole network at the faulted port, ohm; infinite where no current can flow.
     driving_point
-        [case] z1 (3ph, one phase), z1 + z2 (LL), z1 + z2 + z0 (LG), z1 + z2 z0 / (z2 + z0) (LLG), with the fault impedance, ohm.
+        [case] z1 (3ph, one phase), z1 + z2 (LL), z1 + z2 + z0 (LG), z1 + z2 z0 / (z2 + z0) (LLG), ohm; with the
+        fault impedance.
     path_exists
         [case] whether the fault, with earth where the kind says so, closes a path.
     """
@@ -194,6 +196,9 @@ def _currents(group: Group) -> Complexes:
     """Branch currents of every case of a group, [case, branch] A."""
     turned = group.basis.transpose(0, 2, 1)
     unknown = _solved(turned @ group.impedance @ group.basis, turned @ group.emf[:, :, None], group)
+    # The unknowns are in volt-amperes; beyond this multiple of the base only rounding holds the current.
+    if (endless := (np.abs(unknown[:, :, 0]) > ENDLESS * group.cases.base_power[:, None]).any(1)).any():
+        raise NetworkError(_no_impedance(group, int(endless.argmax())))
     currents: Complexes = (group.basis @ unknown)[:, :, 0]
     return currents
 
@@ -215,11 +220,13 @@ def _solved(matrix: Complexes, right: Complexes, group: Group) -> Complexes:
     try:
         solved = np.asarray(np.linalg.solve(matrix, right), np.complex128)
     except np.linalg.LinAlgError as error:
-        raise NetworkError(
-            f"case {group.rows[0]} or one like it ({group.kind}) has a path without impedance through the fault; "
-            "give sources, windings or the fault an impedance (ohm)"
-        ) from error
+        raise NetworkError(_no_impedance(group, 0)) from error
     return solved
+
+
+def _no_impedance(group: Group, number: int) -> str:
+    what = "has a path without impedance through the fault; give sources, windings or the fault an impedance (ohm)"
+    return f"case {group.rows[number]} or one like it ({group.kind}) {what}"
 
 
 def _has_path(group: Group) -> NDArray[np.bool_]:
