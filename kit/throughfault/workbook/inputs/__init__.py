@@ -2,7 +2,6 @@
 
 from throughfault.workbook.inputs.design_data import (
     conductor_section,
-    line_voltage,
     phase_voltage,
     series_turns,
     turn_section,
@@ -25,7 +24,6 @@ __all__ = [
     "WindingConnection",
     "conductor_section",
     "json_schema",
-    "line_voltage",
     "parse_vector_group",
     "phase_voltage",
     "read_unit",

@@ -6,7 +6,6 @@ from collections.abc import Iterator, Mapping
 from typing import Any
 
 from throughfault.quantities import Quantity
-from throughfault.workbook.inputs.design_data import line_voltage
 from throughfault.workbook.inputs.lines import KeyPath, path_text
 from throughfault.workbook.inputs.model import UnitFile
 from throughfault.workbook.inputs.section import Section
@@ -72,7 +71,7 @@ def _settled(file: UnitFile) -> Iterator[Default]:
     """Yield the defaults that take their value from other keys."""
     for name, source in file.system.terminals.items():
         if source.voltage is None:
-            yield Default(f"system.{name}.voltage", line_voltage(file, name))
+            yield Default(f"system.{name}.voltage", file.windings[name].rated_voltage)
     for name, connection in list(file.connections.items())[1:]:
         if (
             connection.letter == "D"

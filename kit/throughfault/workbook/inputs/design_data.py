@@ -7,14 +7,12 @@ from typing import Protocol
 
 from throughfault.quantities import Quantity
 from throughfault.workbook.inputs.design import Coil, Design
-from throughfault.workbook.inputs.rating import Rating
 from throughfault.workbook.inputs.vector_group import VectorGroup, WindingConnection
 from throughfault.workbook.inputs.windings import PRINCIPAL, Winding
 
 __all__ = [
     "Described",
     "conductor_section",
-    "line_voltage",
     "phase_voltage",
     "radial_fill",
     "series_turns",
@@ -24,10 +22,6 @@ __all__ = [
 
 class Described(Protocol):
     """A unit, or a unit file not yet made into one."""
-
-    @property
-    def rating(self) -> Rating:
-        """The rating."""
 
     @property
     def windings(self) -> dict[str, Winding]:
@@ -63,16 +57,6 @@ def series_turns(design: Design, winding: str, tapping: str = PRINCIPAL) -> floa
     return sum(sum(block_turns(coil, tapping)) / coil.parallel_paths for coil in coils)
 
 
-def line_voltage(unit: Described, winding: str, tapping: str = PRINCIPAL) -> Quantity:
-    """Return the line-to-line voltage at a winding's terminals.
-
-    The plate of one unit of a bank gives the voltage of its winding: in a star the line voltage over root three.
-    """
-    plate = unit.voltage(winding, tapping)
-    turned = unit.rating.bank and unit.connections[winding].letter != "D"
-    return Quantity(math.sqrt(3.0) * plate.value, plate.unit) if turned else plate
-
-
 def phase_voltage(unit: Described, winding: str, tapping: str = PRINCIPAL) -> float:
     """Return the voltage induced in the turns of one phase of a winding, in V.
 
@@ -80,10 +64,10 @@ def phase_voltage(unit: Described, winding: str, tapping: str = PRINCIPAL) -> fl
     two thirds of the line voltage, since the halves stand at 120 degrees. Series winding of an
     autotransformer: difference of the terminals.
     """
-    line = line_voltage(unit, winding, tapping).to("V")
+    line = unit.voltage(winding, tapping).to("V")
     first, *others = unit.connections
     if unit.group.auto and winding == first:
-        line -= line_voltage(unit, others[0], tapping).to("V")
+        line -= unit.voltage(others[0], tapping).to("V")
     letter = unit.connections[winding].letter
     star = letter == "Y" or (letter == "auto" and not unit.group.single_phase)
     return line / math.sqrt(3.0) if star else 2.0 * line / 3.0 if letter == "Z" else line

@@ -78,3 +78,13 @@ class Limit(Section):
 
     value: Annotated[Quantity | ProofStressShare, AnyQuantity(proof_stress=True)] = key("The limit.")
     source: Title = key("Clause of a licensed copy with date and reader, or the maker's proven rule.")
+
+    @property
+    def quantity(self) -> Quantity | None:
+        """The limit, unless it is a share of the proof stress."""
+        return self.value if isinstance(self.value, Quantity) else None
+
+    @property
+    def proof_stress_share(self) -> float | None:
+        """The share of Rp0.2, where the limit is one."""
+        return self.value.share if isinstance(self.value, ProofStressShare) else None

@@ -7,7 +7,6 @@ from collections.abc import Iterator
 
 from throughfault.declare import OpenPoint
 from throughfault.quantities import Quantity
-from throughfault.workbook.inputs.design_data import line_voltage
 from throughfault.workbook.inputs.open_points_design import DESIGN_POINTS
 from throughfault.workbook.inputs.unit import Unit
 
@@ -91,7 +90,7 @@ def resistance_of_rows(unit: Unit) -> Iterator[OpenPoint]:
 def sources(unit: Unit) -> Iterator[OpenPoint]:
     """Find unusual sources, and a unit without any."""
     for name, source in unit.system.terminals.items():
-        rated = line_voltage(unit, name)
+        rated = unit.windings[name].rated_voltage
         if (
             source.x_over_r is not None
             and not USUAL_SOURCE_X_OVER_R[0] <= source.x_over_r <= USUAL_SOURCE_X_OVER_R[1]

@@ -19,6 +19,8 @@ FAMILIES = {
     "force": "coil",
     "strength": "coil",
     "dynamic": "coil",
+    "apparatus": "",
+    "impedance": "",
     "test": "",
     "similar": "",
     "spread": "",

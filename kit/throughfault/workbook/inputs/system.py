@@ -31,7 +31,7 @@ class Source(Section):
         "Line-to-line voltage the fault level is stated at.",
         NETWORK,
         default=None,
-        in_words="rated_voltage, line to line",
+        in_words="rated_voltage",
     )
     short_circuit_power: Annotated[Quantity | Literal["table"] | None, Either(Measure("MVA"), ("table",))] = (
         key(

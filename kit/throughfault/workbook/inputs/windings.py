@@ -34,8 +34,7 @@ class Winding(Section):
 
     rated_power: Power = key("Rated power of the winding; of a bank that of one unit.", PLATE)
     rated_voltage: Voltage = key(
-        "Rated voltage as on the plate: line to line; of a single-phase unit, also in a bank, that of its "
-        "winding (in a star the line voltage over root three, IEC 60076-1).",
+        "Rated voltage of the terminal, line to line, also of a bank; of a single-phase unit across the winding.",
         PLATE,
     )
     highest_voltage: Voltage | None = key("Highest voltage for equipment, Um.", PLATE, default=None)
