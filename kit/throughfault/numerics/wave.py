@@ -45,7 +45,8 @@ def first_maximum(x_over_r: ArrayLike) -> Floats:
     phi = np.arctan(ratio)
     sine, cosine = np.sin(phi), np.cos(phi)
     # d/dx [sin(x - phi) + sin(phi) exp(-x cot(phi))] = cos(x - phi) - cos(phi) exp(-x cot(phi)) = 0
-    rate = np.divide(cosine, sine, out=np.full(ratio.shape, np.inf), where=sine > 0)
+    with np.errstate(over="ignore"):  # next to no reactance: the d.c. part is gone at once
+        rate = np.divide(cosine, sine, out=np.full(ratio.shape, np.inf), where=sine > 0)
     x = phi + np.pi / 2
     for _ in range(_STEPS):
         decay = np.exp(-x * rate)
