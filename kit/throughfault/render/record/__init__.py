@@ -2,17 +2,15 @@
 
 from throughfault.render.record.exporter import RecordExporter, export_record
 from throughfault.render.record.lint import lint
-from throughfault.render.record.lookup import data_ids, lookup, loose_digits, unresolved
 from throughfault.render.record.normalise import normalise, notebook_text
+from throughfault.render.record.shown import data_ids, loose_digits
 
 __all__ = [
     "RecordExporter",
     "data_ids",
     "export_record",
     "lint",
-    "lookup",
     "loose_digits",
     "normalise",
     "notebook_text",
-    "unresolved",
 ]

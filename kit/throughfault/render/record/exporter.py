@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import re
-from collections.abc import Callable
+from collections.abc import Callable, Mapping
 from importlib.resources import files
 from typing import Any, ClassVar
 
@@ -103,8 +103,8 @@ def _contents(headings: list[tuple[int, str, str]]) -> str:
     return f'<nav class="contents" aria-label="Contents"><p class="title">Contents</p><ol>\n{rows}</ol></nav>'
 
 
-def export_record(notebook: NotebookNode, *, tag: str, revision: str, title: str) -> str:
-    """Make the record's page of an executed notebook.
+def export_record(notebook: NotebookNode, results: Mapping[str, Any]) -> str:
+    """Make the record's page of an executed notebook; the results name the unit.
 
     The table of contents takes the place of an empty ``nav`` of class ``contents``, or stands first.
 
@@ -117,10 +117,11 @@ def export_record(notebook: NotebookNode, *, tag: str, revision: str, title: str
     body, headings = _numbered(body)
     contents = _contents(headings)
     body = _PLACE.sub(lambda _: contents, body, count=1) if _PLACE.search(body) else contents + body
-    style = style_sheet(body, tag, revision)
+    unit = results["unit"]
+    style = style_sheet(body, unit["tag"], unit["revision"])
     page = _PAGE.format(
         policy=Markup(POLICY.format(style_hash(style))), style=Markup(style), body=Markup(body),  # noqa: S704 - sanitised
-        tag=tag, revision=revision, title=title,
+        tag=unit["tag"], revision=unit["revision"], title=unit["title"],
     )  # fmt: skip
     if faults := lint(page):
         raise RunError("the record is not clean: " + " ".join(faults))

@@ -1,0 +1,57 @@
+"""Winding temperature during the fault against what is permitted."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping, Sequence
+
+import numpy as np
+from matplotlib.figure import Figure
+from numpy.typing import NDArray
+
+from throughfault.render.plots.style import ACCENT, INK, LINES, MARKERS, axes, look
+
+__all__ = ["temperature_curve"]
+
+Array = NDArray[np.float64]
+MARKS = 6  # markers along a curve
+
+
+def temperature_curve(
+    time: Sequence[float] | Array,
+    temperature: Mapping[str, Sequence[float] | Array],
+    limit: Mapping[str, float],
+    duration: float | None = None,
+) -> Figure:
+    """Draw the temperature of each winding over the duration of the fault.
+
+    Parameters
+    ----------
+    time
+        Instants in s, shape (n,).
+    temperature
+        In degC by winding, shape (n,).
+    limit
+        Permitted temperature in degC by name of what it holds for; equal ones are drawn once.
+    duration
+        Duration of the fault in s, marked.
+    """
+    with look():
+        drawn, (ax,) = axes(3.1)
+        for number, (name, values) in enumerate(temperature.items()):
+            ax.plot(time, values, color=INK, linestyle=LINES[number % len(LINES)], marker=MARKERS[number % len(MARKERS)],
+                    markevery=max(1, len(values) // MARKS), markersize=4.5, markerfacecolor="white", label=name)  # fmt: skip
+            ax.annotate(name, (time[-1], values[-1]), xytext=(5, -3), textcoords="offset points", annotation_clip=False)
+        for value in dict.fromkeys(limit.values()):
+            names = ", ".join(name for name, held in limit.items() if held == value)
+            ax.axhline(value, color=ACCENT, linewidth=1.6)
+            ax.annotate(f"limit {value:g} °C ({names})", (time[0], value), xytext=(4, 4), textcoords="offset points",
+                        color=ACCENT, fontweight="bold")  # fmt: skip
+        if duration is not None:
+            ax.axvline(duration, color=INK, linewidth=0.8, linestyle=LINES[2])
+            ax.annotate(f"fault duration {duration:g} s", (duration, ax.get_ylim()[0]), xytext=(-4, 5),
+                        textcoords="offset points", rotation=90, ha="right", va="bottom")  # fmt: skip
+        ax.set_xlabel("time since the fault began, s")
+        ax.set_ylabel("winding temperature, °C")
+        ax.margins(x=0.0, y=0.12)
+        ax.legend(loc="upper left", bbox_to_anchor=(0.0, 0.88), title="winding", alignment="left")
+        return drawn
