@@ -17,7 +17,7 @@ KINDS = ("two-winding", "three-winding", "auto", "distribution")
 @click.option("--kind", type=click.Choice(KINDS), default="two-winding", show_default=True)
 @click.option("--out", metavar="FILE", type=click.Path(path_type=Path), help="Where to write it. [default: TAG.toml]")
 def new(tag: str, kind: str, out: Path | None) -> None:
-    """Write a commented unit file to start from.
+    r"""Write a commented unit file to start from.
 
     \b
     Example: throughfault new BV-T9 --kind three-winding
@@ -39,7 +39,7 @@ def new(tag: str, kind: str, out: Path | None) -> None:
 
 @click.command()
 def schema() -> None:
-    """Print the JSON schema of the unit file, for editors that complete and check.
+    r"""Print the JSON schema of the unit file, for editors that complete and check.
 
     \b
     Example: throughfault schema > unit.schema.json
@@ -54,7 +54,7 @@ def schema() -> None:
 @click.option("--replace", is_flag=True, help="Replace a template of that name.")
 @click.argument("name", metavar="NAME")
 def assemble(names: str, name: str, *, replace: bool) -> None:
-    """Build ./templates/NAME.ipynb from the cell library.
+    r"""Build ./templates/NAME.ipynb from the cell library.
 
     What every record carries (summary, unit data, verdict, open points, signatures) is added when not named.
 
@@ -74,7 +74,7 @@ def assemble(names: str, name: str, *, replace: bool) -> None:
 @click.command()
 @click.argument("name", metavar="[NAME]", required=False)
 def cells(name: str | None) -> None:
-    """List the cell library, or show one cell: formula, symbols, units, source, range, checks behind it.
+    r"""List the cell library, or show one cell: formula, symbols, units, source, range, checks behind it.
 
     \b
     Example: throughfault cells average_temperature_copper

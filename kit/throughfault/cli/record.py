@@ -21,12 +21,12 @@ def _ask() -> bytes:
 @click.command()
 @RECORD
 @click.option("--role", type=click.Choice(ROLES), required=True)
-@click.option("--key", metavar="KEY", type=click.Path(path_type=Path), required=True, help="OpenSSH private key, Ed25519.")
+@click.option("--key", metavar="KEY", type=click.Path(path_type=Path), required=True, help="OpenSSH key, Ed25519.")
 @click.option("--signer", metavar="NAME", required=True, help="As the verifier's list of signers names you.")
 @click.option("--decision", type=click.Choice(DECISIONS), default="accept", show_default=True)
 @click.option("--comment", metavar="TEXT", default="")
 def sign(record: Path, role: str, key: Path, signer: str, decision: str, comment: str) -> None:
-    """Sign a record in a role.
+    r"""Sign a record in a role.
 
     What is signed names the record's manifest, the role, the decision and all earlier signatures.
 
@@ -46,7 +46,7 @@ def sign(record: Path, role: str, key: Path, signer: str, decision: str, comment
 @click.option("--signers", metavar="FILE", type=click.Path(path_type=Path), help="Your own allowed_signers file.")
 @click.option("--require", metavar="ROLE,...", default="", help="Roles that must have signed.")
 def verify(record: Path, signers: Path | None, require: str) -> int:
-    """Check every hash and signature of a record; nothing in it is run.
+    r"""Check every hash and signature of a record; nothing in it is run.
 
     \b
     Example: throughfault verify records/BV-T1-A --signers allowed_signers --require author,checker
@@ -65,7 +65,7 @@ def verify(record: Path, signers: Path | None, require: str) -> int:
 @RECORD
 @click.option("--template", metavar="PATH", type=click.Path(path_type=Path), help="Template not shipped with the kit.")
 def reproduce(record: Path, template: Path | None) -> int:
-    """Run a record's inputs again with the installed kit and compare number by number.
+    r"""Run a record's inputs again with the installed kit and compare number by number.
 
     \b
     Example: throughfault reproduce records/BV-T1-A

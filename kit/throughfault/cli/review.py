@@ -15,7 +15,7 @@ UNIT = click.argument("unit", metavar="UNIT.toml", type=click.Path(path_type=Pat
 @click.command()
 @UNIT
 def check(unit: Path) -> None:
-    """Validate a unit file and print every fault found.
+    r"""Validate a unit file and print every fault found.
 
     \b
     Example: throughfault check example_reviews/BV-T1/unit.toml
@@ -36,7 +36,7 @@ def check(unit: Path) -> None:
 @click.option("--out", metavar="DIR", type=click.Path(path_type=Path), default=Path("records"), show_default=True)
 @click.option("--strict", is_flag=True, help="Exit 1 unless the overall verdict is 'withstands'.")
 def review(unit: Path, template: str | None, out: Path, *, strict: bool) -> int:
-    """Run the workbook on a unit file and write its record.
+    r"""Run the workbook on a unit file and write its record.
 
     The record is DIR/<tag>-<revision>. An unsigned one is replaced once the new one is whole; a
     signed one is refused.

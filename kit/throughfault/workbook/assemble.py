@@ -76,7 +76,8 @@ def _metadata(cells: Sequence[str]) -> dict[str, object]:
 
 def template_bytes(notebook: nbformat.NotebookNode) -> bytes:
     """Return a template as the bytes of its file."""
-    return (nbformat.writes(notebook, version=nbformat.NO_CONVERT).rstrip("\n") + "\n").encode("utf-8")
+    text = str(nbformat.writes(notebook, version=nbformat.NO_CONVERT))
+    return (text.rstrip("\n") + "\n").encode("utf-8")
 
 
 def write_template(cells: Sequence[str], name: str, folder: Path) -> Path:

@@ -44,7 +44,7 @@ class ThisPython(KernelSpecManager):  # type: ignore[misc]
 class PromptClient(AsyncKernelClient):  # type: ignore[misc]
     """A client that is ready as soon as the kernel has answered on both channels."""
 
-    async def wait_for_ready(self, timeout: float | None = None) -> None:
+    async def wait_for_ready(self, timeout: float | None = None) -> None:  # noqa: ASYNC109 - the library's own name
         """Wait until the kernel answers a request and its idle state is seen for it."""
         deadline = time.monotonic() + (timeout or START_TIMEOUT)
         while time.monotonic() < deadline:

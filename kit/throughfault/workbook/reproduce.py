@@ -24,7 +24,9 @@ CLOSED_FORM = 1e-9
 SOLVED = 1e-6
 SOLVED_PREFIXES = ("field.", "force.", "strength.", "dynamic.", "spread.", "headroom.")
 #: below this a difference of two computed numbers is rounding, in the unit named
-FLOOR = {"%": 1e-9, "kA": 1e-9, "degC": 1e-7, "A/mm^2": 1e-9, "s": 1e-9, "kN": 1e-6, "MPa": 1e-6, "T": 1e-9, "deg": 1e-6}
+FLOOR = {
+    "%": 1e-9, "kA": 1e-9, "degC": 1e-7, "A/mm^2": 1e-9, "s": 1e-9, "kN": 1e-6, "MPa": 1e-6, "T": 1e-9, "deg": 1e-6,
+}  # fmt: skip
 ZERO = 1e-12
 #: a phasor of (nearly) no length has no angle worth comparing, kA
 NO_LENGTH = 1e-9

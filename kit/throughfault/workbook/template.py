@@ -19,7 +19,9 @@ TAGS = ("parameters", "calculation", "finding", "note", "signature")
 PARAMETER = "inputs"
 ALLOWED_IMPORT = "throughfault"
 _COMPUTING = (ast.BinOp, ast.AugAssign, ast.Compare, ast.Lambda, ast.FunctionDef, ast.AsyncFunctionDef, ast.ClassDef)
-_COMPUTING_STATEMENTS = (ast.For, ast.While, ast.With, ast.Try, ast.ListComp, ast.DictComp, ast.SetComp, ast.GeneratorExp)
+_COMPUTING_STATEMENTS = (
+    ast.For, ast.While, ast.With, ast.Try, ast.ListComp, ast.DictComp, ast.SetComp, ast.GeneratorExp,
+)  # fmt: skip
 
 
 @dataclass(frozen=True)
@@ -72,7 +74,7 @@ def read_template(path: Path) -> Template:
     try:
         notebook = nbformat.reads(data.decode("utf-8"), as_version=nbformat.NO_CONVERT)
         nbformat.validate(notebook)
-    except Exception as fault:  # the reader's own errors are of many kinds
+    except Exception as fault:  # noqa: BLE001 - the reader's own errors are of many kinds
         reason = str(fault).splitlines()[0][:120] if str(fault) else type(fault).__name__
         raise TemplateError(f"{path.name}: must be a notebook (nbformat 4.5), could not be read: {reason}") from None
     faults = template_faults(notebook, path.name)
@@ -115,14 +117,19 @@ def _parameter_faults(tree: ast.Module) -> Iterator[str]:
     match tree.body:
         case [ast.Assign(targets=[ast.Name(id=name)], value=ast.Constant(value=str()))] if name == PARAMETER:
             return
-    yield f"the parameters cell must hold the one line {PARAMETER} = \"...\"."
+    yield f'the parameters cell must hold the one line {PARAMETER} = "...".'
 
 
 def _code_faults(tree: ast.Module) -> Iterator[str]:
     for node in ast.walk(tree):
         if isinstance(node, _COMPUTING + _COMPUTING_STATEMENTS):
-            yield f"a notebook calls and does not compute; '{ast.unparse(node).splitlines()[0][:60]}' belongs in a cell of the library."
-        elif isinstance(node, ast.Import) or (
-            isinstance(node, ast.ImportFrom) and (node.module, [a.name for a in node.names]) != (ALLOWED_IMPORT, ["notebook"])
-        ):
+            line = ast.unparse(node).splitlines()[0][:60]
+            yield f"a notebook calls and does not compute; '{line}' belongs in a cell of the library."
+        elif isinstance(node, ast.Import | ast.ImportFrom) and not _allowed(node):
             yield f"may import throughfault.notebook only, got '{ast.unparse(node)}'."
+
+
+def _allowed(node: ast.Import | ast.ImportFrom) -> bool:
+    if isinstance(node, ast.Import):
+        return False
+    return node.module == ALLOWED_IMPORT and [alias.name for alias in node.names] == ["notebook"]

@@ -66,5 +66,5 @@ def conclude(unit: Unit, checks: Sequence[Check]) -> Conclusion:
 
 
 def _unconfirmed_point(check: Check) -> OpenPoint:
-    template = f"{check.id}: the limit carries a verdict and is recalled; a signatory must confirm it from a licensed copy"
+    template = f"{check.id}: a recalled limit carries the verdict; a signatory must confirm it from a licensed copy"
     return OpenPoint(f"limit.{check.id}", template, clause=check.limit.source if check.limit else "", blocking=True)
