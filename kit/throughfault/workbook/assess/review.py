@@ -34,6 +34,12 @@ class Review:
         """The standard that decides."""
         return rules_for(self.unit)
 
+    @property
+    def standard(self) -> str:
+        """The standard and edition that decide, as people write them."""
+        separator = ":" if self.rules.title.startswith("IEC") else "-"
+        return f"{self.rules.title}{separator}{self.rules.edition}"
+
     @cached_property
     def duty(self) -> Duty:
         """Fault currents."""
