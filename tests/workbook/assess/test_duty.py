@@ -1,0 +1,269 @@
+"""The duty: which cases are run, what they give, which governs."""
+
+import math
+from pathlib import Path
+
+import numpy as np
+import pytest
+from hypothesis import given, settings
+from hypothesis import strategies as st
+
+from throughfault.numerics.network import solve
+from throughfault.workbook.assess.duty import assess_duty
+from throughfault.workbook.assess.fault_case import fault_cases
+from throughfault.workbook.assess.fault_network import NetworkData, build_cases, transformer_of
+from throughfault.workbook.assess.rules import rules_for
+from throughfault.workbook.inputs import read_unit, read_unit_text
+
+EXAMPLES = Path(__file__).parents[3] / "example_reviews"
+TAGS = ("BV-T1", "BV-T2", "BV-D7")
+
+TWO_WINDING = """
+format = "throughfault-unit/1"
+standard = "IEC 60076-5:2006"
+[identity]
+tag = "BV-X1"
+title = "Brackwater Vale, a unit for tests"
+[rating]
+phases = {phases}
+frequency = "50 Hz"
+vector_group = "{group}"
+immersion = "oil"
+core = "{core}"
+[windings.HV]
+rated_power = "40 MVA"
+rated_voltage = "132 kV"
+highest_voltage = "145 kV"
+[windings.LV]
+rated_power = "40 MVA"
+rated_voltage = "33 kV"
+highest_voltage = "36 kV"
+[[impedances]]
+between = ["HV", "LV"]
+tapping = "principal"
+impedance = "10 %"
+base_power = "40 MVA"
+{impedance}
+[system.HV]
+short_circuit_power = "10000 MVA"
+{system}
+"""
+
+
+def make(group="YNd11", core="three-limb", phases=3, impedance="", system="", more=""):
+    text = TWO_WINDING.format(group=group, core=core, phases=phases, impedance=impedance, system=system) + more
+    return read_unit_text(text, "unit.toml")
+
+
+def duty_of(unit):
+    return assess_duty(unit, rules_for(unit))
+
+
+@pytest.fixture(scope="module", params=TAGS)
+def example(request):
+    unit = read_unit(EXAMPLES / request.param / "unit.toml")
+    return unit, duty_of(unit)
+
+
+def test_worked_figures_of_the_trade():
+    """40 MVA, 132 kV, 10 %, 10 000 MVA: 1.682 kA and 2.55 times that at the peak (own arithmetic of A4 in the standard)."""
+    duty = duty_of(make())
+    case = next(entry for entry in duty.entries if entry["id"] == "principal/LV/3ph/HV")
+    assert case["terminals"]["HV"]["a"]["rms"] == pytest.approx(1.682, abs=0.0005)
+    assert case["terminals"]["HV"]["a"]["peak"] == pytest.approx(4.29, abs=0.005)
+
+
+def test_closed_form_and_network_agree_when_angles_do():
+    """Without resistance magnitudes add as phasors do, so the standard's sum is the network's current."""
+    duty = duty_of(make())
+    closed = next(step for step in duty.fragment.steps if step.id == "duty.closed_form.HV-LV.symmetrical")
+    case = next(entry for entry in duty.entries if entry["id"] == "principal/LV/3ph/HV")
+    assert case["terminals"]["HV"]["a"]["rms"] == pytest.approx(closed.result.value, rel=1e-12)
+
+
+def test_every_terminal_fault_and_infeed_is_run(example):
+    """Case ids cover tappings, terminals brought out, faults and infeeds, once each."""
+    unit, duty = example
+    names = [entry["id"] for entry in duty.entries]
+    assert len(names) == len(set(names))
+    assert {entry["tapping"] for entry in duty.entries} == set(unit.tappings)
+    assert {entry["at"] for entry in duty.entries} == {n for n, w in unit.windings.items() if not w.stabilising}
+    assert all(f"{t}/LV/3ph/HV" in names for t in unit.tappings)
+
+
+def test_no_case_exceeds_the_largest(example):
+    """What governs is at least as large as every phase of every case."""
+    _, duty = example
+    for entry in duty.entries:
+        for name, phases in entry["currents"].items():
+            for phase in phases.values():
+                assert phase["rms"] <= duty.windings[name].symmetrical * (1 + 1e-9)
+                assert phase["peak"] <= duty.windings[name].peak * (1 + 1e-9)
+
+
+def test_governing_case_gives_the_value(example):
+    """The case named as governing holds the value."""
+    _, duty = example
+    entries = {entry["id"]: entry for entry in duty.entries}
+    for name, winding in duty.windings.items():
+        phases = entries[winding.symmetrical_case]["currents"][name].values()
+        assert max(phase["rms"] for phase in phases) == pytest.approx(winding.symmetrical, rel=1e-12)
+
+
+def test_ampere_turns_balance_in_every_case(example):
+    """Currents into the dotted ends, times phase-winding voltages, sum to zero on every limb."""
+    unit, _ = example
+    rules = rules_for(unit)
+    data = NetworkData(unit, rules, None)
+    cases, _missing = fault_cases(unit, rules)
+    transformer = transformer_of(unit)
+    arrays = build_cases(data, transformer, cases)
+    solution = solve(transformer, arrays)
+    share = {"Y": 1 / math.sqrt(3), "D": 1.0}
+    turns = arrays.voltage * [share[c.letter] for c in unit.group.windings]
+    balance = (solution.winding_current * turns[:, :, None]).sum(axis=1)
+    assert np.abs(balance).max() < 1e-9 * np.abs(solution.winding_current * turns[:, :, None]).max()
+
+
+def test_what_the_standard_requires_is_told_apart():
+    """IEC requires the three-phase fault of a two-winding unit; the others are extra."""
+    duty = duty_of(make())
+    required = {entry["fault"] for entry in duty.entries if entry["required_by_standard"]}
+    assert required == {"3ph"}
+    assert {entry["fault"] for entry in duty.entries} == {"3ph", "LG", "LL", "LLG"}
+
+
+def test_earth_faults_only_where_a_path_exists():
+    """On the delta side nothing returns through earth, so no earth fault is run there."""
+    faults = {(entry["at"], entry["fault"]) for entry in duty_of(make()).entries}
+    assert ("LV", "LG") not in faults
+    assert ("HV", "LG") in faults
+
+
+def test_tolerance_runs_the_smaller_impedance_too():
+    """A guaranteed impedance with tolerance gives a second case, larger by about the tolerance."""
+    duty = duty_of(make(impedance='tolerance = "7.5 %"'))
+    rms = {entry["id"]: entry["currents"]["HV"]["a"]["rms"] for entry in duty.entries}
+    plain, reduced = rms["principal/LV/3ph/HV"], rms["principal/LV/3ph/HV/tolerance"]
+    assert reduced / plain == pytest.approx((0.1 + 0.004) / (0.1 * 0.925 + 0.004), rel=1e-12)
+    assert duty.windings["HV"].symmetrical_case == "principal/LV/3ph/HV/tolerance"
+
+
+def test_minimum_source_is_run_and_is_extra():
+    """The lowest fault level gives cases of their own that the standard does not ask for."""
+    duty = duty_of(make(system='short_circuit_power_minimum = "2000 MVA"'))
+    low = next(entry for entry in duty.entries if entry["id"] == "principal/LV/3ph/HV/minimum")
+    assert not low["required_by_standard"]
+    assert low["currents"]["HV"]["a"]["rms"] == pytest.approx(40 / (math.sqrt(3) * 132) / (0.1 + 0.02), rel=1e-9)
+
+
+def test_both_ends_of_the_zero_sequence_range_are_run():
+    """Where X0/X1 is not given both ends count, and so do both shares of the impedance with a delta."""
+    names = {entry["id"] for entry in duty_of(make()).entries if entry["fault"] == "LG"}
+    head = "principal/HV/LG/HV"
+    assert names == {head, f"{head}/x0(HV)=3", f"{head}/z0=0.85z", f"{head}/x0(HV)=3/z0=0.85z"}
+    given = {e["id"] for e in duty_of(make(system="x0_over_x1 = 1.5", impedance='zero_sequence = "9 %"')).entries}
+    assert {name for name in given if "/LG/" in name} == {head}
+
+
+def test_three_limb_without_delta_needs_the_magnetising_impedance():
+    """Earth faults of such a unit are not assessed until the measured value is given."""
+    duty = duty_of(make(group="YNyn0"))
+    assert {entry["fault"] for entry in duty.entries} == {"3ph", "LL"}
+    assert {m.id for m in duty.fragment.missing} == {"duty.earth_fault.HV", "duty.earth_fault.LV"}
+    assert all(m.keys == ("zero_sequence.at", "zero_sequence.magnetising") for m in duty.fragment.missing)
+    more = '[zero_sequence]\nat = "LV"\nmagnetising = "55 %"\n'
+    assert "LG" in {entry["fault"] for entry in duty_of(make(group="YNyn0", more=more)).entries}
+
+
+def test_interstar_needs_its_own_zero_sequence_impedance():
+    """Earth faults at an interstar winding are not assessed without the pair's zero-sequence impedance."""
+    bare = duty_of(make(group="Dzn0"))
+    assert [m.keys for m in bare.fragment.missing] == [("impedances.zero_sequence",)]
+    given = duty_of(make(group="Dzn0", impedance='zero_sequence = "4 %"'))
+    entry = next(e for e in given.entries if e["id"] == "principal/LV/LG/HV")
+    three_phase = next(e for e in given.entries if e["id"] == "principal/LV/3ph/HV")
+    assert entry["terminals"]["LV"]["a"]["rms"] > three_phase["terminals"]["LV"]["a"]["rms"]
+
+
+def test_single_phase_unit_has_line_to_line_faults_only():
+    """A single-phase unit is faulted across its winding."""
+    duty = duty_of(make(group="Ii0", core="single-phase", phases=1))
+    assert {entry["fault"] for entry in duty.entries} == {"LL"}
+    entry = next(e for e in duty.entries if e["id"] == "principal/LV/LL/HV")
+    assert entry["terminals"]["HV"]["a"]["rms"] == pytest.approx(40 / 132 / (0.1 + 0.004), rel=1e-9)
+
+
+def test_out_of_phase_closing_is_run_when_asked():
+    """Closing at 180 degrees drives twice the voltage through both networks and the transformer."""
+    system = 'out_of_phase = "180 deg"\n[system.LV]\nshort_circuit_power = "2000 MVA"'
+    duty = duty_of(make(system=system))
+    entry = next(e for e in duty.entries if e["fault"] == "OP")
+    assert not entry["required_by_standard"]
+    expected = 2 * 40 / (math.sqrt(3) * 132) / (0.1 + 0.004 + 0.02)
+    assert entry["terminals"]["HV"]["a"]["rms"] == pytest.approx(expected, rel=1e-9)
+
+
+def test_series_reactance_adds_to_the_source():
+    """A reactor at the terminal limits the current."""
+    duty = duty_of(make(system='series_reactance = "10 ohm"'))
+    entry = next(e for e in duty.entries if e["id"] == "principal/LV/3ph/HV")
+    ohm = 43.56 + 1.7424 + 10
+    assert entry["terminals"]["HV"]["a"]["rms"] == pytest.approx(132 / math.sqrt(3) / ohm, rel=1e-9)
+
+
+def test_a_small_source_impedance_is_neglected_in_category_one():
+    """630 kVA, 4 %, behind 500 MVA: the system is 3.15 % of the transformer and left out (25 times rated current)."""
+    text = TWO_WINDING.format(group="Dyn11", core="three-limb", phases=3, impedance="", system="")
+    for old, new in (("40 MVA", "630 kVA"), ("132 kV", "20 kV"), ("145 kV", "24 kV"), ("33 kV", "400 V"), ("36 kV", "1.1 kV"), ("10 %", "4 %"), ("10000 MVA", "500 MVA")):
+        text = text.replace(old, new)
+    duty = duty_of(read_unit_text(text, "unit.toml"))
+    entry = next(e for e in duty.entries if e["id"] == "principal/LV/3ph/HV")
+    assert entry["terminals"]["HV"]["a"]["rms"] == pytest.approx(25 * 0.63 / (math.sqrt(3) * 20), rel=1e-9)
+
+
+def test_no_infeed_is_reported_not_guessed():
+    """Without any network behind a terminal nothing is assessed, and the key is named."""
+    unit = make(system="")
+    text = TWO_WINDING.format(group="YNd11", core="three-limb", phases=3, impedance="", system="").split("[system.HV]")[0]
+    duty = duty_of(read_unit_text(text, "unit.toml"))
+    assert duty.entries == ()
+    assert duty.windings["HV"].symmetrical is None
+    assert duty.fragment.missing[0].keys == ("system.<winding>.short_circuit_power",)
+    assert unit.windings.keys() == duty.windings.keys()
+
+
+def test_missing_impedance_row_leaves_its_tapping_out():
+    """The cases of a tapping without impedance row are not assessed, and the row is named."""
+    text = TWO_WINDING.format(group="YNd11", core="three-limb", phases=3, impedance="", system="")
+    text = text.replace('highest_voltage = "145 kV"', 'highest_voltage = "145 kV"\ntappings = { plus = "138.6 kV", principal = "132 kV" }')
+    duty = duty_of(read_unit_text(text, "unit.toml"))
+    assert {entry["tapping"] for entry in duty.entries} == {"principal"}
+    assert duty.fragment.missing[0].keys == ("impedances between HV and LV, tapping 'plus'",)
+
+
+def test_exact_peak_above_the_standard_is_an_open_point():
+    """Where the default factor is below the exact first maximum the record says so."""
+    duty = duty_of(make(impedance='resistance = "0.2 %"'))
+    point = next(p for p in duty.fragment.open_points if p.id == "duty.HV.peak_exact")
+    assert point.values["exact"].value > point.values["peak"].value
+
+
+def test_direct_current_resistance_governs_the_offset_only():
+    """A smaller d.c. resistance raises X/R and leaves the symmetrical current alone."""
+    plain, direct = (duty_of(make(impedance=f'resistance = "2 %"\n{more}')) for more in ("", 'dc_resistance = "1 %"'))
+    assert direct.windings["HV"].symmetrical == pytest.approx(plain.windings["HV"].symmetrical, rel=1e-12)
+    assert direct.windings["HV"].peak > plain.windings["HV"].peak
+
+
+@settings(max_examples=15, deadline=None)
+@given(st.floats(2.0, 30.0), st.floats(100.0, 50000.0))
+def test_units_of_the_file_do_not_matter(percent, power):
+    """The same numbers in other units give the same duty."""
+    first = make(impedance="", system="")
+    text = TWO_WINDING.format(group="YNd11", core="three-limb", phases=3, impedance="", system="")
+    one = text.replace("10 %", f"{percent!r} %").replace("10000 MVA", f"{power!r} MVA")
+    other = text.replace("10 %", f"{percent / 100!r} p.u.").replace("10000 MVA", f"{power * 1000!r} kVA")
+    duties = [duty_of(read_unit_text(t, "unit.toml")).windings["LV"].symmetrical for t in (one, other)]
+    assert duties[0] == pytest.approx(duties[1], rel=1e-9)
+    assert first.windings.keys() == {"HV", "LV"}
