@@ -13,10 +13,10 @@ from throughfault.render.html import (
     NOT_ASSESSED,
     Column,
     Text,
+    breakable,
     clause,
     code,
     data,
-    identity,
     items,
     joined,
     prose,
@@ -71,7 +71,8 @@ def formula_block(step: Step, heading: Text | None = None) -> Markup:
 
 def algorithm_block(algorithm: Algorithm, content: Text = "") -> Markup:
     """Show the governing equations of a solver, where it holds, and what it gave."""
-    validity = items((prose(text) for text in algorithm.valid_for), "validity")
+    holds = Markup('<span class="clause">{}</span>')
+    validity = items((holds.format(text) for text in algorithm.valid_for), "validity")
     return Markup(
         '<section class="formula" aria-labelledby="cell-{id}"><h4 id="cell-{id}">{title}</h4>'
         '<p class="source">{source}</p>{equations}<p>Holds for:</p>{validity}{content}</section>\n'
@@ -98,25 +99,30 @@ def _limit(check: Entry) -> Markup:
     if check["limit"] is None:
         return NOT_ASSESSED
     shown = quantity_text(check["limit"], check["unit"])
-    limit = Markup("{} {}").format(check["sense"], data(f"checks/{check['id']}/limit", check["limit"], shown))
+    return Markup("{} {}").format(check["sense"], data(f"checks/{check['id']}/limit", check["limit"], shown))
+
+
+def _limit_source(check: Entry) -> Markup:
+    if not check["limit_source"]:
+        return Markup("")
+    source = clause(check["limit_source"], check["limit_provenance"])
     kit = check.get("kit_limit")
     if kit is None:
-        return limit
+        return source
     original = data(f"checks/{check['id']}/kit_limit/value", kit["value"], quantity_text(kit["value"], check["unit"]))
-    return limit + Markup('<br><span class="instead">instead of {}, {}</span>').format(
-        original, clause(kit["source"], kit["provenance"])
-    )
+    instead = Markup('<br><span class="instead">instead of {}, {}</span>')
+    return source + instead.format(original, clause(kit["source"], kit["provenance"]))
 
 
 def _check_row(check: Entry) -> list[Text]:
-    source = clause(check["limit_source"], check["limit_provenance"]) if check["limit_source"] else Markup("")
+    source = _limit_source(check)
     reason = check.get("reason")
     verdict = Markup('<strong class="verdict">{}</strong>').format(check["verdict"])
     if reason:
         verdict += Markup('<br><span class="clause">{}</span>').format(reason)
-    governing = identity(check["governing_case"]) if check["governing_case"] else Markup("")
+    governing = breakable(check["governing_case"]) if check["governing_case"] else Markup("")
     return [
-        identity(check["id"]),
+        breakable(check["id"]),
         quantity(f"checks/{check['id']}/value", check["value"], check["unit"]),
         _limit(check),
         utilisation_bar(f"checks/{check['id']}/utilisation", check["utilisation"]),
@@ -142,9 +148,9 @@ def _point(point: Entry) -> Markup:
             q = point["values"][name]
             parts.append(quantity(f"open_points/{point['id']}/{name}", q["value"], q["unit"]))
     if point["clause"]:
-        parts += [" ", clause(point["clause"])]
+        parts += [" (", clause(point["clause"]), ")"]
     if point["blocking"]:
-        parts.append(Markup(" <strong>To be settled before approval.</strong>"))
+        parts.append(Markup(" <strong>[to be settled before approval]</strong>"))
     return joined(parts)
 
 
@@ -152,7 +158,7 @@ def open_point_list(points: Sequence[Entry]) -> Markup:
     """List what a reviewer must settle or know, its numbers as data; says so when there is none."""
     if not points:
         return Markup("<p>No open points.</p>")
-    return items(Markup("{} {}").format(code(p["id"]), _point(p)) for p in points)
+    return items(Markup("{}: {}").format(code(p["id"]), _point(p)) for p in points)
 
 
 def missing_list(missing: Sequence[Entry]) -> Markup:
@@ -160,5 +166,5 @@ def missing_list(missing: Sequence[Entry]) -> Markup:
     if not missing:
         return Markup("<p>Nothing is left out for want of inputs.</p>")
     reason = Markup('<span class="clause">{}</span>')
-    rows = [[identity(m["id"]), reason.format(m["reason"]), joined(map(code, m["keys"]), ", ")] for m in missing]
+    rows = [[breakable(m["id"]), reason.format(m["reason"]), joined(map(code, m["keys"]), ", ")] for m in missing]
     return table("Not assessed for want of inputs", ["Result", "Reason", "Keys that would supply it"], rows)

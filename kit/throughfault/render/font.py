@@ -57,10 +57,11 @@ def _slanted(letter: str) -> int | None:
 
 
 def code_points(page: str) -> frozenset[int]:
-    """Collect the characters that the formulas of a page show, upright and slanted."""
+    """Collect the characters that the formulas of a page show, upright and slanted, and the signs drawn unasked."""
     shown = "".join(html.unescape(_ANNOTATION.sub("", formula)) for formula in _MATH.findall(page))
     slanted = (_slanted(letter) for letter in set(shown))
-    return frozenset(map(ord, shown)) | frozenset(point for point in slanted if point is not None)
+    roots = {ord("√")} if "<msqrt" in page or "<mroot" in page else set()  # an element's sign, no character
+    return frozenset({*map(ord, shown), *(point for point in slanted if point is not None), *roots})
 
 
 def _make(font: bytes, points: Iterable[int]) -> bytes:

@@ -19,6 +19,7 @@ __all__ = [
     "Column",
     "Text",
     "Value",
+    "breakable",
     "clause",
     "code",
     "data",
@@ -65,6 +66,11 @@ def quantity(id: str, value: float | None, unit: str) -> Markup:  # noqa: A002 -
 def identity(text: object) -> Markup:
     """Mark a name: tag, winding, tapping, case, key."""
     return Markup('<span class="identity">{}</span>').format(text)
+
+
+def breakable(text: str) -> Markup:
+    """Mark a long name that may break behind its dots and slashes."""
+    return identity(re.sub(r"([./])", "\\1\N{ZERO WIDTH SPACE}", text))
 
 
 def code(text: object) -> Markup:

@@ -16,6 +16,7 @@ from throughfault.errors import DeclarationError
 
 __all__ = [
     "column_text",
+    "decimals_of",
     "full_value",
     "number_latex",
     "number_text",
@@ -78,16 +79,25 @@ def number_latex(value: float, digits: int = DIGITS) -> str:
     return plain if power is None else rf"{plain} \times 10^{{{power}}}"
 
 
+def _largest_power(values: Sequence[float | None]) -> int:
+    present = [Decimal(repr(float(v))) for v in values if v is not None]
+    return max((number.adjusted() for number in present if number), default=0)
+
+
+def decimals_of(values: Sequence[float | None], digits: int = COLUMN_DIGITS) -> int:
+    """Return the decimals with which the largest of the values keeps `digits` significant digits."""
+    return max(0, digits - 1 - _largest_power(values))
+
+
 def column_text(values: Sequence[float | None], digits: int = COLUMN_DIGITS) -> list[str]:
     """Write the numbers of one table column with one count of decimals, ``None`` as an empty text.
 
     The largest keeps `digits` significant digits, so that decimal points stand below each other.
     """
-    present = [Decimal(repr(float(v))) for v in values if v is not None]
-    largest = max((number.adjusted() for number in present if number), default=0)
+    largest = _largest_power(values)
     if not -4 <= largest < 7:  # the powers of ten of the two bounds above
         return ["" if v is None else number_text(v, digits) for v in values]
-    decimals = max(0, digits - 1 - largest)
+    decimals = decimals_of(values, digits)
     return ["" if v is None else f"{Decimal(repr(float(v))):.{decimals}f}".replace("-", MINUS) for v in values]
 
 

@@ -62,14 +62,17 @@ class _Printer:
                 return f"\N{MINUS SIGN}{self.within(inner, PRODUCT)}", SUM
             case Binary(sign=sign, left=left, right=right):
                 return self.binary(sign, left, right)
-            case Call(function=function, arguments=arguments):
-                inside = ", ".join(self.node(a)[0] for a in arguments)
-                if function == "sqrt" and isinstance(arguments[0], Number):
-                    return f"√{inside}", ATOM
-                return f"{_NAMED.get(function, function)}({inside})", ATOM
+            case Call():
+                return self.call(node), ATOM
             case Choice(test=test, then=then, otherwise=otherwise):
                 text = f"{self.node(then)[0]} if {self.compare(test)}, otherwise {self.node(otherwise)[0]}"
                 return text, SUM - 1
+
+    def call(self, node: Call) -> str:
+        inside = ", ".join(self.node(a)[0] for a in node.arguments)
+        if node.function == "sqrt" and isinstance(node.arguments[0], Number):
+            return f"√{inside}"
+        return f"{_NAMED.get(node.function, node.function)}({inside})"
 
     def binary(self, sign: str, left: Node, right: Node) -> tuple[str, int]:
         level = {"+": SUM, "-": SUM, "*": PRODUCT, "/": PRODUCT}.get(sign, POWER)

@@ -9,14 +9,15 @@ from markupsafe import Markup
 
 from throughfault.declare import Algorithm, Step
 from throughfault.render.blocks import algorithm_block, check_table, formula_block
-from throughfault.render.html import Column, Text, data, identity, joined, note, section, table
-from throughfault.render.numbers import column_text, unit_text
+from throughfault.render.html import Column, Text, breakable, data, identity, joined, note, section, table
+from throughfault.render.numbers import decimals_of
 from throughfault.render.parts.result import case_name, origins, reasons, result_list, result_matrix
 
 __all__ = ["duty_part"]
 
 Entry = Mapping[str, Any]
 CURRENT = "kA"
+MEASURES = ("rms", "peak")
 _WINDING = ("symmetrical", "peak", "peak_exact")
 _TERMINAL = ("terminal_symmetrical", "terminal_peak")
 
@@ -61,7 +62,7 @@ def _by_tapping(cases: Sequence[Entry]) -> Markup:
         rows: list[list[Text]] = []
         for tapping in dict.fromkeys(case["tapping"] for case in cases):
             these = [case for case in cases if case["tapping"] == tapping]
-            pairs = [_largest(these, name, measure) for measure in ("rms", "peak")]
+            pairs = [_largest(these, name, measure) for measure in MEASURES]
             if pairs[0] is None:
                 continue
             shown = [data(p[0], p[1], f"{p[1]:.3f}") if p else Markup("") for p in pairs]
@@ -74,31 +75,54 @@ def _by_tapping(cases: Sequence[Entry]) -> Markup:
     return table("Largest phase current of each winding by tapping", columns, groups, "by-tapping")
 
 
-def _case_rows(case: Entry, kind: str, phases: Sequence[str]) -> list[list[Text]]:
-    rows: list[list[Text]] = []
+def _values(case: Entry, kind: str, name: str, phases: Sequence[str]) -> tuple[list[str], list[float | None]]:
+    """Return ids and values of a row: r.m.s. of each phase, then peak of each phase."""
+    entries = dict(_phases(case, kind, name))
+    paths = [(f"cases/{case['id']}/{kind}/{name}/{phase}", m) for m in MEASURES for phase in phases]
+    return [f"{path}/{m}" for path, m in paths], [entries.get(path, {}).get(m) for path, m in paths]
+
+
+def _case_body(case: Entry, kind: str, phases: Sequence[str], decimals: int) -> Markup:
+    asked = Markup("") if case["required_by_standard"] else Markup('<br><span class="extra">extra to the standard</span>')
+    head = Markup('<th scope="rowgroup" rowspan="{}">{}{}</th>').format(len(case[kind]), breakable(case["id"]), asked)
+    rows = []
     for name in case[kind]:
-        entries = dict(_phases(case, kind, name))
-        ids = [f"cases/{case['id']}/{kind}/{name}/{phase}/{m}" for m in ("rms", "peak") for phase in phases]
-        values = [entries.get(i.rpartition("/")[0], {}).get(i.rpartition("/")[2]) for i in ids]
-        texts = column_text(values)
-        rows.append([
-            identity(name),
-            *(data(i, v, t) if v is not None else "" for i, v, t in zip(ids, values, texts, strict=True)),
-        ])  # fmt: skip
-    return rows
+        ids, values = _values(case, kind, name, phases)
+        shown = (data(i, v, f"{v:.{decimals}f}") if v is not None else "" for i, v in zip(ids, values, strict=True))
+        cells = joined(Markup('<td class="number">{}</td>').format(cell) for cell in shown)
+        rows.append(Markup('<tr>{}<th scope="row">{}</th>{}</tr>\n').format(head, identity(name), cells))
+        head = Markup("")
+    return Markup('<tbody class="case">{}</tbody>\n').format(joined(rows))
+
+
+def _decimals(cases: Sequence[Entry], kind: str, phases: Sequence[str]) -> int:
+    """Choose one count of decimals for the table, by the winding that carries least."""
+    by_name: dict[str, list[float | None]] = {}
+    for case in cases:
+        for name in case[kind]:
+            by_name.setdefault(name, []).extend(_values(case, kind, name, phases)[1])
+    return max((decimals_of(values) for values in by_name.values()), default=0)
 
 
 def _all_cases(cases: Sequence[Entry], kind: str, caption: str) -> Markup:
-    phases = list(dict.fromkeys(p for case in cases for name in case[kind] for p in case[kind][name]))
-    groups: dict[Text, list[list[Text]]] = {}
-    for case in cases:
-        asked = "" if case["required_by_standard"] else Markup(' <span class="extra">extra to the standard</span>')
-        if rows := _case_rows(case, kind, phases):
-            groups[Markup("{}{}").format(identity(case["id"]), asked)] = rows
-    if not groups:
+    """Set the complete table of cases, a body of rows for each."""
+    these = [case for case in cases if case[kind]]
+    if not these:
         return Markup("")
-    heads = [Column(f"{m}, phase {p}, {unit_text(CURRENT)}", numeric=True) for m in ("R.m.s.", "Peak") for p in phases]
-    return table(caption, ["Case", *heads], groups, "cases")
+    phases = list(dict.fromkeys(p for case in these for name in case[kind] for p in case[kind][name]))
+    decimals = _decimals(these, kind, phases)
+    over = joined(
+        Markup('<th scope="colgroup" colspan="{}" class="over">{}</th>').format(len(phases), f"{word}, {CURRENT}")
+        for word in ("R.m.s.", "First peak")
+    )
+    letters = joined(Markup('<th scope="col" class="number">{}</th>').format(p) for p in [*phases, *phases])
+    head = Markup('<tr><td></td><td></td>{}</tr><tr><th scope="col">Case</th><th scope="col">{}</th>{}</tr>').format(
+        over, "Winding" if kind == "currents" else "Terminal", letters
+    )
+    body = joined(_case_body(case, kind, phases, decimals) for case in these)
+    return Markup(
+        '<div class="scroll"><table class="cases"><caption>{}</caption><thead>{}</thead>\n{}</table></div>\n'
+    ).format(caption, head, body)  # fmt: skip
 
 
 def duty_part(
@@ -139,8 +163,9 @@ def duty_part(
 def _every_case(cases: Sequence[Entry]) -> list[Markup]:
     return [
         note(
-            "A case is named by tapping, faulted terminal, kind of fault and infeed. Cases the standard does not ask "
-            "for are marked; they count for the governing values as well. Angles stand in the results file."
+            "A case is named by tapping, faulted terminal, kind of fault and infeed; a, b and c are the phases. Cases "
+            "the standard does not ask for are marked; they count for the governing values as well. Angles stand in "
+            "the results file."
         ),
         _all_cases(cases, "currents", "Phase currents of the windings in every case"),
         _all_cases(cases, "terminals", "Currents at the line terminals in every case"),

@@ -11,6 +11,7 @@ from throughfault.render.html import (
     NOT_ASSESSED,
     Column,
     Text,
+    breakable,
     clause,
     code,
     data,
@@ -36,7 +37,7 @@ def case_name(case: str | None) -> Markup:
     """Write the id of a case so that it may break at its slashes."""
     if not case:
         return Markup("")
-    return Markup('<span class="identity case-name">{}</span>').format(case.replace("/", "/\N{ZERO WIDTH SPACE}"))
+    return breakable(case)
 
 
 def numbers(ids: Sequence[str], values: Sequence[float | None]) -> list[Markup]:
@@ -97,7 +98,7 @@ def result_list(caption: Text, quantities: Mapping[str, Entry]) -> Markup:
         return Markup("")
     rows: list[list[Text]] = [
         [
-            identity(id_),
+            breakable(id_),
             quantity(id_, entry["value"], entry["unit"]),
             clause(entry["source"], entry["provenance"]),
             case_name(entry["governing_case"]),
@@ -120,7 +121,7 @@ def origins(quantities: Mapping[str, Entry]) -> Markup:
 def reasons(quantities: Mapping[str, Entry]) -> Markup:
     """Tell why results are not assessed."""
     rows: list[list[Text]] = [
-        [identity(id_), Markup('<span class="clause">{}</span>').format(entry["reason"])]
+        [breakable(id_), Markup('<span class="clause">{}</span>').format(entry["reason"])]
         for id_, entry in quantities.items()
         if entry["value"] is None
     ]

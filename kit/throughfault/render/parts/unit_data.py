@@ -78,7 +78,7 @@ def _entry_name(item: Mapping[str, Any], index: int) -> str:
 def _block(key: str, node: Any, path: Path, windings: Sequence[str]) -> Markup:
     """Show one table of the unit file."""
     if columns := _columns(node, path, windings):
-        return _matrix(words(key).capitalize(), columns)
+        return _matrix("By winding" if isinstance(node, Mapping) else "By entry", columns)
     if not isinstance(node, Mapping):
         return definitions([(_label((key,)), _given(path, node))])
     beside = {k: v for k, v in node.items() if isinstance(v, Mapping) and k in windings}
@@ -86,7 +86,7 @@ def _block(key: str, node: Any, path: Path, windings: Sequence[str]) -> Markup:
     plain = {k: v for k, v in node.items() if k not in beside and k not in apart}
     parts = [_facts(plain, path)]
     if beside:
-        parts.append(_matrix(words(key).capitalize(), [(k, v, (*path, k)) for k, v in beside.items()]))
+        parts.append(_matrix("By winding", [(k, v, (*path, k)) for k, v in beside.items()]))
     parts += [_block(k, v, (*path, k), windings) for k, v in apart.items()]
     return joined(parts)
 

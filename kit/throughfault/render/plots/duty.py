@@ -34,8 +34,10 @@ def _draw(ax: Any, winding: str, cases: Sequence[Mapping[str, Any]], rows: list[
             if worst is None or peak > worst[0]:
                 worst = (peak, y, case["id"])
     if worst is not None:
-        ax.plot(worst[0], worst[1], marker="o", markersize=9, markerfacecolor="none", markeredgecolor=ACCENT, markeredgewidth=1.5)
-        ax.annotate(f"{worst[0]:.2f} kA", worst[:2], xytext=(8, -3), textcoords="offset points", color=ACCENT, fontweight="bold")
+        ring = {"markerfacecolor": "none", "markeredgecolor": ACCENT, "markeredgewidth": 1.5}
+        ax.plot(worst[0], worst[1], marker="o", markersize=9, **ring)
+        text = {"textcoords": "offset points", "color": ACCENT, "fontweight": "bold"}
+        ax.annotate(f"{worst[0]:.2f} kA", worst[:2], xytext=(8, -3), **text)
     ax.set_title(f"Winding {winding}")
     ax.set_yticks(range(len(rows)), rows)
     ax.set_ylim(len(rows) - 0.5, -0.5)

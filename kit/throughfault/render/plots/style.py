@@ -21,7 +21,7 @@ INK, GREY, ACCENT = "#1a1a1a", "#7d7d7d", "#1f4e79"
 LINES: tuple[Any, ...] = ("-", (0, (6, 2)), (0, (1.5, 1.5)), (0, (6, 2, 1.5, 2)), (0, (10, 2, 1, 2, 1, 2)))
 MARKERS = ("o", "s", "^", "D", "v", "P", "X", "<", ">")
 WIDTH = 6.9  # inches; the text width of an A4 page
-_SETTINGS = {
+_SETTINGS: dict[Any, Any] = {
     "svg.hashsalt": "throughfault",
     "svg.fonttype": "path",
     "text.parse_math": False,  # names come from the unit file

@@ -38,9 +38,11 @@ def temperature_curve(
     with look():
         drawn, (ax,) = axes(3.1)
         for number, (name, values) in enumerate(temperature.items()):
-            ax.plot(time, values, color=INK, linestyle=LINES[number % len(LINES)], marker=MARKERS[number % len(MARKERS)],
-                    markevery=max(1, len(values) // MARKS), markersize=4.5, markerfacecolor="white", label=name)  # fmt: skip
-            ax.annotate(name, (time[-1], values[-1]), xytext=(5, -3), textcoords="offset points", annotation_clip=False)
+            marks = {"marker": MARKERS[number % len(MARKERS)], "markevery": max(1, len(values) // MARKS)}
+            line = {"color": INK, "linestyle": LINES[number % len(LINES)], "markerfacecolor": "white"}
+            ax.plot(time, values, label=name, markersize=4.5, **marks, **line)
+            end, text = (time[-1], values[-1]), f"winding {name}"
+            ax.annotate(text, end, xytext=(6, -3), textcoords="offset points", annotation_clip=False)
         for value in dict.fromkeys(limit.values()):
             names = ", ".join(name for name, held in limit.items() if held == value)
             ax.axhline(value, color=ACCENT, linewidth=1.6)
@@ -48,10 +50,9 @@ def temperature_curve(
                         color=ACCENT, fontweight="bold")  # fmt: skip
         if duration is not None:
             ax.axvline(duration, color=INK, linewidth=0.8, linestyle=LINES[2])
-            ax.annotate(f"fault duration {duration:g} s", (duration, ax.get_ylim()[0]), xytext=(-4, 5),
-                        textcoords="offset points", rotation=90, ha="right", va="bottom")  # fmt: skip
+            ax.annotate(f"fault duration {duration:g} s", (duration, ax.get_ylim()[0]), xytext=(-5, 6),
+                        textcoords="offset points", ha="right", va="bottom")  # fmt: skip
         ax.set_xlabel("time since the fault began, s")
         ax.set_ylabel("winding temperature, °C")
         ax.margins(x=0.0, y=0.12)
-        ax.legend(loc="upper left", bbox_to_anchor=(0.0, 0.88), title="winding", alignment="left")
         return drawn

@@ -43,7 +43,8 @@ def fault_wave(
         ax.plot(time, current, color=INK, label="current")
         ax.axhline(0.0, color=INK, linewidth=0.6)
         if peak is not None:
-            ax.plot(*peak, marker="o", markersize=6, markerfacecolor="white", markeredgecolor=ACCENT, markeredgewidth=1.6)
+            ring = {"markerfacecolor": "white", "markeredgecolor": ACCENT, "markeredgewidth": 1.6}
+            ax.plot(*peak, marker="o", markersize=6, **ring)
             ax.annotate(
                 f"first peak {peak[1]:.2f} kA at {peak[0]:.1f} ms", peak, xytext=(9, 3), textcoords="offset points",
                 color=ACCENT, fontweight="bold",

@@ -11,6 +11,7 @@ from jupyter_core.paths import ENV_JUPYTER_PATH, SYSTEM_JUPYTER_PATH
 from markupsafe import Markup
 from nbconvert.exporters import TemplateExporter
 from nbformat import NotebookNode
+from traitlets import default
 from traitlets.config import Config
 
 from throughfault.errors import RunError
@@ -30,7 +31,7 @@ _PAGE = Markup(
     '<!DOCTYPE html>\n<html lang="en">\n<head>\n<meta charset="utf-8">\n'
     '<meta http-equiv="Content-Security-Policy" content="{policy}">\n'
     '<meta name="viewport" content="width=device-width, initial-scale=1">\n'
-    '<title>{tag}, revision {revision}: {title}</title>\n<style>{style}</style>\n</head>\n<body>\n'
+    '<title class="identity">{tag}, revision {revision}: {title}</title>\n<style>{style}</style>\n</head>\n<body>\n'
     '<a class="skip" href="#record">Skip to the record</a>\n'
     '<header class="identity"><h1>{title}</h1><p class="tag">{tag}, revision {revision}</p></header>\n'
     '<main id="record" tabindex="-1">\n{body}\n</main>\n'
@@ -41,6 +42,7 @@ _PAGE = Markup(
 class RecordExporter(TemplateExporter):  # type: ignore[misc]  # the library is not typed
     """Renders the body of a record: notes escaped, findings through the allowlist, code left out."""
 
+    output_mimetype = "text/html"
     template_filters: ClassVar[dict[str, Callable[[str], str]]] = {
         "note": lambda source: sanitise(note_html(source)),
         "sanitise": sanitise,
@@ -53,6 +55,10 @@ class RecordExporter(TemplateExporter):  # type: ignore[misc]  # the library is 
         super().__init__(config=config, template_name="review_record", extra_template_basedirs=[folder])
         for name, function in self.template_filters.items():
             self.register_filter(name, function)
+
+    @default("file_extension")
+    def _file_extension_default(self) -> str:
+        return ".html"
 
     def get_prefix_root_dirs(self) -> list[str]:
         """Look for base templates where they are installed, never in a user's folder."""
