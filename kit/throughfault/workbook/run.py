@@ -17,7 +17,7 @@ from papermill.exceptions import PapermillExecutionError
 from throughfault import __version__
 from throughfault.errors import RecordError, RunError
 from throughfault.render.record import export_record, lint, normalise
-from throughfault.workbook.folder import replace_record, staging_folder
+from throughfault.workbook.folder import recover_exchange, replace_record, staging_folder
 from throughfault.workbook.inputs import Unit, read_unit
 from throughfault.workbook.kernel import ENGINE, kernel_environment
 from throughfault.workbook.manifest import inputs_sha256, write_manifest
@@ -57,6 +57,7 @@ def review(unit_file: Path, out: Path, template: str | None = None, *, progress:
     unit = read_unit(unit_file)
     chosen = read_template(find_template(template or default_template(unit)))
     name = f"{unit.identity.tag}-{unit.identity.revision}"
+    recover_exchange(out / name)
     _refuse_signed(out / name)
     with staging_folder(out, name) as staging, _storage(out):
         results = fill_record(staging, {UNIT_FILE: unit_file.read_bytes()}, chosen, progress=progress)

@@ -15,14 +15,15 @@ from throughfault.quantities import Quantity
 from throughfault.workbook.assess.apparatus import apparatus_checks
 from throughfault.workbook.assess.duty_entry import Largest, WindingDuty, case_entry, duty_outcomes
 from throughfault.workbook.assess.duty_step import CaseFacts, closed_form_steps, factor_outcomes, peak_steps
-from throughfault.workbook.assess.fault_case import FaultCase, fault_cases, infeed_powers
+from throughfault.workbook.assess.fault_case import FaultCase, fault_cases
 from throughfault.workbook.assess.fault_network import NetworkData
 from throughfault.workbook.assess.fault_solution import Solved, ratio_of, solve_cases
 from throughfault.workbook.assess.fault_wave import Wave, governing_wave
 from throughfault.workbook.assess.rules import RuleSet
+from throughfault.workbook.assess.through_fault import category_of
 from throughfault.workbook.inputs import Unit
 
-__all__ = ["Duty", "Largest", "WindingDuty", "assess_duty", "rating_category"]
+__all__ = ["Duty", "Largest", "WindingDuty", "assess_duty"]
 
 
 @dataclass(frozen=True)
@@ -53,12 +54,6 @@ class Duty:
     fragment: Fragment = field(repr=False)
 
 
-def rating_category(unit: Unit, rules: RuleSet) -> str | None:
-    """Return the category of the unit by the standard's rated power."""
-    power = max(infeed_powers(unit).values())
-    return rules.category(power, unit.rating.phases, bank=unit.rating.bank).name
-
-
 def assess_duty(unit: Unit, rules: RuleSet) -> Duty:
     """Run every case of a unit.
 
@@ -67,7 +62,7 @@ def assess_duty(unit: Unit, rules: RuleSet) -> Duty:
     NetworkError
         If the data describe no network that can be solved.
     """
-    category = rating_category(unit, rules)
+    category = category_of(unit, rules).name
     wanted, missing = fault_cases(unit, rules)
     data = NetworkData(unit, rules, category)
     solved, unassessed = solve_cases(data, wanted)
