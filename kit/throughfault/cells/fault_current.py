@@ -45,6 +45,42 @@ def rated_current_single_phase(
 
 
 @cell(
+    title="Rated current of a delta winding",
+    source=Source(THEORY, "symmetrical delta", "derived"),
+    valid_for=(POWER, VOLTAGE),
+    checks=("tests/cells/test_fault_current.py: the line current over the square root of three",),
+)
+def rated_current_delta(
+    rated_power: Annotated[float, nom.rated_power], rated_voltage: Annotated[float, nom.rated_voltage]
+) -> Annotated[float, nom.rated_current]:
+    """Take a third of the power at the voltage between lines."""
+    S, U = rated_power, rated_voltage
+    return 1000 * S / (3 * U)
+
+
+@cell(
+    title="Rated current of the common winding of an autotransformer",
+    source=Source(THEORY, "currents at the tap of the winding", "derived"),
+    valid_for=(
+        Range("low_voltage_current", above=0.0),
+        Range("high_voltage_current", above=0.0),
+        Condition(
+            "high-voltage current below low-voltage current",
+            lambda low_voltage_current, high_voltage_current: high_voltage_current < low_voltage_current,
+        ),
+    ),
+    checks=("tests/cells/test_fault_current.py: ampere-turns of series and common winding balance",),
+)
+def common_winding_current(
+    low_voltage_current: Annotated[float, nom.low_voltage_current],
+    high_voltage_current: Annotated[float, nom.high_voltage_current],
+) -> Annotated[float, nom.rated_current]:
+    """Subtract the series current, which comes from the other side, from the load current."""
+    I_X, I_H = low_voltage_current, high_voltage_current
+    return I_X - I_H
+
+
+@cell(
     title="Impedance of the system",
     source=Source(IEC, "4.1.2.1", "recalled"),
     valid_for=(Range("system_voltage", above=0.0), Range("short_circuit_power", above=0.0)),
@@ -188,6 +224,22 @@ def reactance_ratio(
     """Reactance in per cent."""
     z, r = impedance_ratio, resistance_ratio
     return sqrt(z**2 - r**2)
+
+
+@cell(
+    title="Impedance on the rated power",
+    source=Source(THEORY, "change of base", "derived"),
+    valid_for=(Range("impedance_ratio", above=0.0), POWER, Range("base_power", above=0.0)),
+    checks=("tests/cells/test_fault_current.py: the impedance in ohm stays",),
+)
+def rated_impedance_ratio(
+    impedance_ratio: Annotated[float, nom.impedance_ratio],
+    rated_power: Annotated[float, nom.rated_power],
+    base_power: Annotated[float, nom.base_power],
+) -> Annotated[float, nom.rated_impedance_ratio]:
+    """Change the base; the voltage stays."""
+    z, S, S_b = impedance_ratio, rated_power, base_power
+    return z * S / S_b
 
 
 @cell(

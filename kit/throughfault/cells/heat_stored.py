@@ -3,11 +3,11 @@
 from __future__ import annotations
 
 from collections.abc import Callable
-from math import exp, sqrt
+from math import exp, log, sqrt
 from typing import Annotated, Any
 
 from throughfault import nomenclature as nom
-from throughfault.declare import Equation, Range, algorithm, cell
+from throughfault.declare import Condition, Equation, Range, algorithm, cell
 from throughfault.errors import OutsideValidity
 from throughfault.sources import Source
 from throughfault.tables import table
@@ -168,6 +168,75 @@ def final_temperature_exponential(
     """Exact for a constant heat content; asked for above a heating ratio of 0.6."""
     T_s, T_k, m, e = start_temperature, temperature_offset, heating_ratio, start_eddy_share
     return (T_k + T_s) * (sqrt(exp(2 * m) + e * (exp(2 * m) - 1)) - 1) + T_s
+
+
+ABOVE_START = Condition(
+    "permitted temperature above the starting temperature",
+    lambda permitted_temperature, start_temperature, **_: permitted_temperature > start_temperature,
+)
+SOLVED = Source("IEEEC57.12.00-2015", "7.4, solved for the heating ratio", "derived")
+
+
+@cell(
+    title="Heating ratio at the permitted temperature, series form",
+    source=SOLVED,
+    valid_for=(*FINAL, ABOVE_START),
+    terms={"r": nom.relative_rise},
+    checks=("tests/cells/test_heat_stored.py: its final temperature is the permitted one",),
+)
+def permitted_heating_ratio_series(
+    start_temperature: Annotated[float, nom.start_temperature],
+    temperature_offset: Annotated[float, nom.temperature_offset],
+    permitted_temperature: Annotated[float, nom.permitted_temperature],
+    start_eddy_share: Annotated[float, nom.start_eddy_share],
+) -> Annotated[float, nom.heating_ratio]:
+    """Solve the series form, which holds where the result is at most 0.6."""
+    T_s, T_k, theta_2, e = start_temperature, temperature_offset, permitted_temperature, start_eddy_share
+    r = (theta_2 - T_s) / (T_k + T_s)
+    return (sqrt((1 + e) ** 2 + 2.4 * r) - (1 + e)) / 1.2
+
+
+@cell(
+    title="Heating ratio at the permitted temperature, exponential form",
+    source=SOLVED,
+    valid_for=(*FINAL, ABOVE_START),
+    terms={"r": nom.relative_rise},
+    checks=("tests/cells/test_heat_stored.py: its final temperature is the permitted one",),
+)
+def permitted_heating_ratio_exponential(
+    start_temperature: Annotated[float, nom.start_temperature],
+    temperature_offset: Annotated[float, nom.temperature_offset],
+    permitted_temperature: Annotated[float, nom.permitted_temperature],
+    start_eddy_share: Annotated[float, nom.start_eddy_share],
+) -> Annotated[float, nom.heating_ratio]:
+    """Solve the exponential form, for ratios above 0.6."""
+    T_s, T_k, theta_2, e = start_temperature, temperature_offset, permitted_temperature, start_eddy_share
+    r = (theta_2 - T_s) / (T_k + T_s)
+    return log(((1 + r) ** 2 + e) / (1 + e)) / 2
+
+
+@cell(
+    title="Duration in which the conductor reaches the permitted temperature, all heat stored",
+    source=SOLVED,
+    valid_for=(
+        Range("heating_ratio", above=0.0),
+        Range("heat_content", above=0.0),
+        Range("start_temperature", **TEMPERATURE),
+        Range("temperature_offset", at_least=200.0, at_most=300.0),
+        Range("start_loss", above=0.0),
+    ),
+    checks=("tests/cells/test_heat_stored.py: its final temperature is the permitted one",),
+)
+def permissible_duration_heat_stored(
+    heating_ratio: Annotated[float, nom.heating_ratio],
+    heat_content: Annotated[float, nom.heat_content],
+    start_temperature: Annotated[float, nom.start_temperature],
+    temperature_offset: Annotated[float, nom.temperature_offset],
+    start_loss: Annotated[float, nom.start_loss],
+) -> Annotated[float, nom.permissible_duration]:
+    """Take the heat content up to the permitted temperature."""
+    m, C_h, T_s, T_k, W_s = heating_ratio, heat_content, start_temperature, temperature_offset, start_loss
+    return m * C_h * (T_k + T_s) / W_s
 
 
 HEAT_CONTENT: dict[str, Callable[..., float]] = {"copper": heat_content_copper, "aluminium": heat_content_aluminium}

@@ -85,6 +85,20 @@ def corner_thermal_duration(
     return 1250 * Z**2 / (s / 100) ** 2
 
 
+@cell(
+    title="Impedance that bounds the through-fault current",
+    source=Source("IEEEC57.109-2018", "4, from the greatest current of the duty", "derived"),
+    valid_for=(Range("current_multiple", at_least=1.0),),
+    checks=("tests/cells/test_through_fault.py: two seconds at the greatest possible current",),
+)
+def fault_impedance(
+    current_multiple: Annotated[float, nom.current_multiple],
+) -> Annotated[float, nom.fault_impedance]:
+    """Take the largest multiple of the duty over all windings brought out, transformer and system together."""
+    N = current_multiple
+    return 1 / N
+
+
 def _points() -> tuple[tuple[float, ...], tuple[float, ...]]:
     curve = table("ieee_c57_109_2018_thermal_curve")
     return curve.column("multiple"), curve.column("duration")

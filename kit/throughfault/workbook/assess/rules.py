@@ -10,6 +10,7 @@ from typing import Literal, Protocol
 from throughfault.declare import Limit
 from throughfault.errors import InputError, did_you_mean
 from throughfault.tables import Table
+from throughfault.workbook.inputs import Unit
 
 __all__ = [
     "Category",
@@ -20,6 +21,7 @@ __all__ = [
     "Tabled",
     "ThermalMethod",
     "bank_power",
+    "category_of",
     "rules_for",
 ]
 
@@ -152,6 +154,13 @@ class RuleSet(Protocol):
 def bank_power(power: float, phases: int, *, bank: bool) -> float:
     """Return the three-phase power of a bank whose file states one unit (``phases`` 1), else the power itself."""
     return 3.0 * power if bank and phases == 1 else power
+
+
+def category_of(unit: Unit, rules: RuleSet) -> Category:
+    """Return the unit's category: by its largest winding, under IEEE by the smaller of its two principal windings."""
+    powers = [winding.rated_power.to("MVA") for winding in unit.windings.values()]
+    power = min(powers[:2]) if rules.base_power_is_self_cooled else max(powers)
+    return rules.category(power, unit.rating.phases, bank=unit.rating.bank)
 
 
 def every_combination(sources: Sequence[str], most: int | None = None) -> tuple[tuple[str, ...], ...]:

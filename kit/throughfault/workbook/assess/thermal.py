@@ -1,0 +1,314 @@
+"""Thermal ability: the temperature of every winding after the fault, held against the standard's limit."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, field
+
+from throughfault.cells import thermal_withstand as withstand
+from throughfault.declare import Check, Fragment, Limit, Missing, OpenPoint, Outcome, Step
+from throughfault.errors import OutsideValidity
+from throughfault.numerics.case import Floats
+from throughfault.numerics.heat import Shots, repeated_shots
+from throughfault.quantities import Quantity
+from throughfault.tables import table
+from throughfault.workbook.assess.rules import LimitOrReason, RuleSet, Tabled, category_of
+from throughfault.workbook.assess.thermal_inputs import (
+    DutyLike,
+    HeatInputs,
+    duration_of,
+    heat_inputs,
+    limit_of,
+    material_of,
+    outcome_of,
+    start_of,
+)
+from throughfault.workbook.assess.thermal_method import METHODS, comparison_steps, conductor_of, curve_of
+from throughfault.workbook.assess.through_fault import ThroughFault, assess_through_fault
+from throughfault.workbook.assess.winding_current import multiple_step, rated_steps
+from throughfault.workbook.inputs import Unit
+
+__all__ = ["Thermal", "WindingThermal", "assess_thermal"]
+
+LABELS = {
+    "exact": "exact exponential",
+    "eddy": "exact, with eddy loss",
+    "offset": "exact, with decaying offset",
+    "other": "form of the other standard, from the same start",
+}
+BEYOND = 1.25  # plots run this much beyond the duration or the permissible duration
+
+
+@dataclass(frozen=True)
+class WindingThermal:
+    """The temperature of one winding.
+
+    Attributes
+    ----------
+    density, temperature, permissible_duration
+        A/mm^2, degC, s; None where not assessed.
+    start, duration
+        What was taken, and from where.
+    limit
+        None where the standard gives none.
+    comparisons
+        ``{name: (label, outcome)}`` shown beside the deciding form, never checked.
+    curve
+        ``time`` in s and ``standard``, ``exact``, ``offset`` in degC, for a plot; empty where not assessed.
+    shots
+        Two faults in a row, for information; None where not assessed.
+    multiple
+        Symmetrical current over rated or base current.
+    """
+
+    winding: str
+    case: str | None
+    method: str
+    start: Tabled
+    duration: Tabled
+    multiple: float | None
+    limit: Limit | None
+    check: Check
+    density: float | None = None
+    temperature: float | None = None
+    permissible_duration: float | None = None
+    comparisons: dict[str, tuple[str, Outcome]] = field(default_factory=dict)
+    curve: dict[str, Floats] = field(default_factory=dict)
+    shots: Shots | None = None
+    fragment: Fragment = field(default_factory=Fragment)
+
+
+@dataclass(frozen=True)
+class Thermal:
+    """Thermal ability of the unit.
+
+    Attributes
+    ----------
+    method
+        Form of the temperature that decides.
+    start_is
+        What the start temperature means under this standard.
+    through_fault
+        Through-fault duration curve with the unit's own points.
+    """
+
+    method: str
+    start_is: str
+    windings: dict[str, WindingThermal]
+    through_fault: ThroughFault
+    fragment: Fragment
+
+
+def assess_thermal(unit: Unit, rules: RuleSet, duty: DutyLike) -> Thermal:
+    """Assess every winding; what lacks inputs is not assessed, and the rest goes on."""
+    windings = {name: _winding(unit, rules, name, duty) for name in unit.windings}
+    multiples = {name: w.multiple for name, w in windings.items()}
+    durations = {name: w.duration for name, w in windings.items()}
+    curve = assess_through_fault(unit, rules, multiples, durations)
+    parts = [*(w.fragment for w in windings.values()), curve.fragment]
+    return Thermal(rules.thermal_method, rules.start_is, windings, curve, _joined(parts))
+
+
+def _joined(parts: list[Fragment]) -> Fragment:
+    return Fragment(
+        quantities=tuple(q for part in parts for q in part.quantities),
+        steps=tuple(s for part in parts for s in part.steps),
+        checks=tuple(c for part in parts for c in part.checks),
+        missing=tuple(m for part in parts for m in part.missing),
+        open_points=tuple(p for part in parts for p in part.open_points),
+    )
+
+
+def _winding(unit: Unit, rules: RuleSet, name: str, duties: DutyLike) -> WindingThermal:
+    duty = duties.windings[name]
+    steps: list[Step] = []
+    multiple = None
+    if duty.symmetrical is not None:
+        rated = rated_steps(unit, rules, name)
+        over = multiple_step(name, Quantity(duty.symmetrical, "kA"), rated)
+        steps += [*rated.steps, over]
+        multiple = over.result.value
+    duration = duration_of(unit, rules, name, category_of(unit, rules).name, multiple)
+    limit = limit_of(unit, rules, name, material_of(unit, name))
+    given = heat_inputs(unit, rules, name, duties, duration)
+    common = _Common(name, duty.symmetrical_case, rules.thermal_method, start_of(unit, rules, name), duration, multiple)
+    if isinstance(given, Missing):
+        return _not_assessed(common, limit, given, steps)
+    return _assessed(common, limit, given, steps, unit.rating.frequency)
+
+
+@dataclass(frozen=True, slots=True)
+class _Common:
+    winding: str
+    case: str | None
+    method: str
+    start: Tabled
+    duration: Tabled
+    multiple: float | None
+
+    @property
+    def outcomes(self) -> tuple[Outcome, ...]:
+        """What was taken for start and duration."""
+        prefix = f"thermal.{self.winding}"
+        return (
+            outcome_of(f"{prefix}.start_temperature", self.start, r"\theta_0"),
+            outcome_of(f"{prefix}.duration", self.duration, "t"),
+        )
+
+
+def _made(common: _Common, limit: Limit | None, check: Check, **more: object) -> WindingThermal:
+    return WindingThermal(
+        winding=common.winding,
+        case=common.case,
+        method=common.method,
+        start=common.start,
+        duration=common.duration,
+        multiple=common.multiple,
+        limit=limit,
+        check=check,
+        **more,  # type: ignore[arg-type]
+    )
+
+
+def _multiple_outcome(common: _Common, steps: list[Step]) -> tuple[Outcome, ...]:
+    if common.multiple is None:
+        return ()
+    return (Outcome.of_step(steps[-1], governing_case=common.case),)
+
+
+def _not_assessed(common: _Common, limit: LimitOrReason, missing: Missing, steps: list[Step]) -> WindingThermal:
+    check = Check(missing.id, None, "degC", limit.limit, "thermal", common.case, missing.reason)
+    prefix = f"thermal.{common.winding}"
+    none = tuple(
+        Outcome(f"{prefix}.{what}", None, unit, symbol, "", "-", "derived", common.case, missing.reason)
+        for what, unit, symbol in (("density", "A/mm^2", "J"), ("temperature", "degC", r"\theta_1"))
+    )
+    quantities = (*common.outcomes, *_multiple_outcome(common, steps), *none)
+    fragment = Fragment(quantities, tuple(steps), (check,), missing=(missing,))
+    return _made(common, limit.limit, check, fragment=fragment)
+
+
+def _assessed(
+    common: _Common, limit: LimitOrReason, given: HeatInputs, steps: list[Step], frequency: Quantity
+) -> WindingThermal:
+    prefix = f"thermal.{given.winding}"
+    quantities = [*common.outcomes, *_multiple_outcome(common, steps)]
+    density = withstand.current_density.step(
+        f"{prefix}.density", winding_current=given.current, conductor_section=given.section
+    )
+    quantities.append(Outcome.of_step(density, governing_case=given.case))
+    temperature, found = _deciding(common, given, density)
+    quantities.append(temperature)
+    allowed, more = _permissible(common, given, density, limit.limit)
+    quantities.append(allowed)
+    beside = comparison_steps(given, density, frequency, common.method)
+    shown = {k: (LABELS[k], Outcome.of_step(s[-1], governing_case=given.case)) for k, s in beside.items()}
+    again, shots = _reclosing(given, density)
+    every = [*steps, density, *found, *more, *(step for s in beside.values() for step in s), *again]
+    quantities += [outcome for _, outcome in shown.values()]
+    quantities += [Outcome.of_step(step, governing_case=given.case) for step in again[-1:]]
+    check, missing = _check(temperature, limit, given.case)
+    fragment = Fragment(
+        tuple(quantities), tuple(every), (check,), missing=missing, open_points=_points(given, check, shown)
+    )
+    until = BEYOND * max(given.duration.to("s"), allowed.value or 0.0)
+    constant = beside["offset"][0].result.value if "offset" in beside else None
+    return _made(
+        common,
+        limit.limit,
+        check,
+        density=density.result.value,
+        temperature=temperature.value,
+        permissible_duration=allowed.value,
+        comparisons=shown,
+        curve=curve_of(given, density.result.value, common.method, until, constant),
+        shots=shots,
+        fragment=fragment,
+    )
+
+
+def _deciding(common: _Common, given: HeatInputs, density: Step) -> tuple[Outcome, tuple[Step, ...]]:
+    """Work out the temperature by the standard's form; outside its range it is not assessed."""
+    id_ = f"thermal.{given.winding}.temperature"
+    try:
+        steps = METHODS[common.method].temperature(given, density, id_)
+    except OutsideValidity as outside:
+        return _outside(id_, "degC", r"\theta_1", given.case, outside), ()
+    return Outcome.of_step(steps[-1], governing_case=given.case), steps
+
+
+def _permissible(
+    common: _Common, given: HeatInputs, density: Step, limit: Limit | None
+) -> tuple[Outcome, tuple[Step, ...]]:
+    id_ = f"thermal.{given.winding}.permissible_duration"
+    if limit is None:
+        none = OutsideValidity("there is no limit to reach")
+        return _outside(id_, "s", r"t_{\max}", given.case, none), ()
+    try:
+        steps = METHODS[common.method].permissible(given, density, limit, id_)
+    except OutsideValidity as outside:
+        return _outside(id_, "s", r"t_{\max}", given.case, outside), ()
+    return Outcome.of_step(steps[-1], governing_case=given.case), steps
+
+
+def _outside(id_: str, unit: str, symbol: str, case: str | None, why: OutsideValidity) -> Outcome:
+    return Outcome(id_, None, unit, symbol, "", "-", "derived", case, str(why))
+
+
+def _check(temperature: Outcome, limit: LimitOrReason, case: str | None) -> tuple[Check, tuple[Missing, ...]]:
+    reason = temperature.reason
+    missing: tuple[Missing, ...] = ()
+    if limit.limit is None:
+        reason = reason or limit.reason
+        missing = (Missing(temperature.id, (limit.key,), limit.reason),)
+    elif not limit.limit.decides:
+        reason = reason or "the recalled limit is uncertain; a signatory's own figure is needed"
+    return Check(temperature.id, temperature.value, "degC", limit.limit, "thermal", case, reason), missing
+
+
+def _points(given: HeatInputs, check: Check, shown: dict[str, tuple[str, Outcome]]) -> tuple[OpenPoint, ...]:
+    """Point out where an effect that the standard's form leaves out would take the winding past the limit."""
+    points = []
+    for name in ("eddy", "offset"):
+        if name not in shown or check.verdict != "within" or check.limit is None:
+            continue
+        label, other = shown[name]
+        if other.value is not None and other.value > check.limit.value:
+            text = f"{given.winding}: {label}, the winding reaches {{other}}; the limit is {{limit}}."
+            values = {"other": Quantity(other.value, "degC"), "limit": Quantity(check.limit.value, "degC")}
+            points.append(OpenPoint(f"{other.id}.above_limit", text, values, check.limit.source))
+    return tuple(points)
+
+
+def _reclosing(given: HeatInputs, density: Step) -> tuple[tuple[Step, ...], Shots | None]:
+    """Work out a second fault after a reclosing pause, for information; the slowest cooling is taken."""
+    pause = table("reclosing").rows[0]
+    cooling = Quantity(table("winding_cooling").rows[0]["greatest"], "min")
+    material = conductor_of(given)
+    prefix = f"thermal.{given.winding}.reclosing"
+    constants = {
+        "thermal_constant": Quantity(material.constant, "A^2 s/mm^4"),
+        "temperature_offset": Quantity(material.offset, "K"),
+    }
+    try:
+        heat = withstand.heat_integral.step(
+            f"{prefix}.heat_integral", current_density=density.result, duration=given.duration
+        )
+        exact = withstand.exact_temperature
+        first = exact.step(f"{prefix}.first", initial_temperature=given.start, heat_integral=heat.result, **constants)
+        rested = withstand.temperature_after_pause.step(
+            f"{prefix}.after_pause",
+            conductor_temperature=first.result,
+            initial_temperature=given.start,
+            dead_time=Quantity(pause["dead_time"], "s"),
+            cooling_time_constant=cooling,
+        )
+        second = exact.step(
+            f"{prefix}.second", initial_temperature=rested.result, heat_integral=heat.result, **constants
+        )
+    except OutsideValidity:
+        return (), None
+    shots = repeated_shots(
+        given.start.to("degC"), density.result.value, type(material)(material.constant, material.offset),
+        duration=given.duration.to("s"), pause=pause["dead_time"], count=int(pause["shots"]), cooling=cooling.to("s"),
+    )  # fmt: skip
+    return (heat, first, rested, second), shots
