@@ -3,11 +3,12 @@
 from __future__ import annotations
 
 from itertools import pairwise
-from math import atan, exp, pi, sin, sqrt
+from math import atan, cos, exp, pi, sin, sqrt
 from typing import Annotated, Any
 
 import numpy as np
 from numpy.typing import ArrayLike
+from scipy.optimize import minimize_scalar
 
 from throughfault import nomenclature as nom
 from throughfault.declare import Equation, Range, algorithm, cell
@@ -36,23 +37,26 @@ def peak_factor_closed_form(x_over_r: Annotated[float, nom.x_over_r]) -> Annotat
     return (1 + exp(-(phi + pi / 2) / x) * sin(phi)) * sqrt(2)
 
 
-def _phase_of(x_over_r: float, factor: float) -> tuple[float, float]:
-    """Return the phase of the first crest on a fine grid, and how far the crest is from a factor."""
-    phi = float(np.arctan(x_over_r))
-    theta = np.linspace(phi, phi + np.pi, 200_001)
-    wave = np.sqrt(2) * (np.sin(theta - phi) + np.sin(phi) * np.exp(-theta / x_over_r))
-    crest = float(theta[np.argmax(wave)])
-    return crest, float(np.max(wave)) / factor - 1.0
+def _first_crest(x_over_r: float) -> tuple[float, float]:
+    """Return phase and height of the first crest by search, without the equation that the solver uses."""
+    phi = atan(x_over_r)
+
+    def below(theta: float) -> float:
+        return -sqrt(2) * (sin(theta - phi) + sin(phi) * exp(-theta / x_over_r))
+
+    found = minimize_scalar(below, bounds=(phi, phi + pi), method="bounded", options={"xatol": 1e-12})
+    return float(found.x), -float(found.fun)
 
 
 def _slope_there(given: dict[str, float], got: float) -> float:
-    phase, _ = _phase_of(given["x_over_r"], got)
-    phi = atan(given["x_over_r"])
-    return float(abs(np.cos(phase - phi) - np.cos(phi) * np.exp(-phase / given["x_over_r"])))
+    del got
+    x = given["x_over_r"]
+    phi, (phase, _) = atan(x), _first_crest(x)
+    return abs(cos(phase - phi) - cos(phi) * exp(-phase / x))
 
 
 def _crest(given: dict[str, float], got: float) -> float:
-    return abs(_phase_of(given["x_over_r"], got)[1])
+    return abs(_first_crest(given["x_over_r"])[1] / got - 1.0)
 
 
 @algorithm(

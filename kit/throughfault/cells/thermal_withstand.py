@@ -244,7 +244,7 @@ def exact_permissible_duration(
         Range("dead_time", at_least=0.0),
         Range("cooling_time_constant", above=0.0),
     ),
-    checks=("tests/numerics/test_heat.py: against numerical integration of two shots with a pause",),
+    checks=("tests/cells/test_thermal_withstand.py: against integration of the cooling",),
 )
 def temperature_after_pause(
     conductor_temperature: Annotated[float, nom.conductor_temperature],

@@ -3,57 +3,24 @@
 from __future__ import annotations
 
 from collections.abc import Iterator
-from dataclasses import dataclass, field
+from dataclasses import dataclass
 from typing import Any
 
-from throughfault.cells.fault_current import (
-    rated_impedance_ratio,
-    system_impedance,
-    system_share,
-    transformer_impedance,
-)
-from throughfault.declare import Fragment, Missing, OpenPoint, Outcome, Step
+from throughfault.cells.fault_current import rated_impedance_ratio
+from throughfault.declare import Fragment, OpenPoint
 from throughfault.quantities import Quantity
 from throughfault.tables import table
-from throughfault.workbook.assess.rules import Category, Neglect, RuleSet, Tabled, category_of
-from throughfault.workbook.assess.thermal_inputs import DutyLike, duration_of, outcome_of
+from throughfault.workbook.assess.requirement_line import Asked, Lines
+from throughfault.workbook.assess.requirement_system import SystemUsed, system_used
+from throughfault.workbook.assess.rules import Category, RuleSet, Tabled, category_of
+from throughfault.workbook.assess.thermal_inputs import DutyLike, duration_of
 from throughfault.workbook.assess.winding_current import multiple_step, rated_steps, three_phase_power
 from throughfault.workbook.inputs import Unit
-from throughfault.workbook.inputs.system import Source
 from throughfault.workbook.inputs.windings import PRINCIPAL
 
 __all__ = ["Asked", "FaultKind", "Requirement", "SystemUsed", "assess_requirement"]
 
 CATEGORIES = ("I", "II", "III", "IV")
-
-
-@dataclass(frozen=True, slots=True)
-class Asked:
-    """One line of what the standard asks: a label, the result, and a remark."""
-
-    label: str
-    outcome: Outcome
-    remark: str = ""
-
-
-@dataclass(frozen=True, slots=True)
-class SystemUsed:
-    """The network at one terminal as the duty takes it.
-
-    Attributes
-    ----------
-    power
-        Short-circuit power in MVA with its source; the value is None where the table has none.
-    neglect
-        For each other winding with an impedance to it: whether the network is left out for a fault there, and why.
-    x0_over_x1
-        The ratios run for earth faults.
-    """
-
-    terminal: str
-    power: Tabled
-    neglect: dict[str, Neglect]
-    x0_over_x1: tuple[Tabled, ...]
 
 
 @dataclass(frozen=True, slots=True)
@@ -86,35 +53,14 @@ class Requirement:
     fragment: Fragment
 
 
-@dataclass
-class _Found:
-    """Collects while the parts are gone through."""
-
-    asked: list[Asked] = field(default_factory=list)
-    steps: list[Step] = field(default_factory=list)
-    points: list[OpenPoint] = field(default_factory=list)
-    missing: list[Missing] = field(default_factory=list)
-
-    def step(self, step: Step, label: str, remark: str = "") -> Step:
-        """Take in a worked step as a line."""
-        self.steps.append(step)
-        self.asked.append(Asked(label, Outcome.of_step(step), remark))
-        return step
-
-    def tabled(self, id_: str, tabled: Tabled, symbol: str, label: str) -> None:
-        """Take in a value of the standard as a line."""
-        remark = tabled.note if tabled.value is not None else ""  # without a value the note is the reason
-        self.asked.append(Asked(label, outcome_of(id_, tabled, symbol), remark))
-
-
 def assess_requirement(unit: Unit, rules: RuleSet, duty: DutyLike) -> Requirement:
     """Collect what the standard asks of this unit; nothing here is a check of its ability."""
-    found = _Found()
+    found = Lines()
     category = category_of(unit, rules)
     _category(found, category)
     _impedances(unit, rules, found)
     _tolerances(unit, found)
-    systems = tuple(_system(unit, rules, name, category, found) for name in unit.system.terminals)
+    systems = tuple(system_used(unit, rules, name, category, found) for name in unit.system.terminals)
     _durations(unit, rules, duty, category, found)
     faults = _faults(duty, found)
     fragment = Fragment(
@@ -128,7 +74,7 @@ def assess_requirement(unit: Unit, rules: RuleSet, duty: DutyLike) -> Requiremen
     )
 
 
-def _category(found: _Found, category: Category) -> None:
+def _category(found: Lines, category: Category) -> None:
     number = None if category.name is None else float(CATEGORIES.index(category.name) + 1)
     tabled = Tabled(number, "1", category.source, category.provenance, "H", category.note)
     found.tabled("requirement.category", tabled, "n", "category, as a number")
@@ -137,7 +83,7 @@ def _category(found: _Found, category: Category) -> None:
         found.points.append(OpenPoint("requirement.category", text, clause=category.source))
 
 
-def _impedances(unit: Unit, rules: RuleSet, found: _Found) -> None:
+def _impedances(unit: Unit, rules: RuleSet, found: Lines) -> None:
     """Hold the principal impedance of two separate windings against the standard's minimum."""
     power = three_phase_power(unit, max((w.rated_power for w in unit.windings.values()), key=lambda q: q.to("MVA")))
     least = rules.minimum_impedance(power.to("MVA"))
@@ -164,7 +110,7 @@ def _impedances(unit: Unit, rules: RuleSet, found: _Found) -> None:
         found.points.append(OpenPoint("requirement.minimum_impedance", text, values, least.source))
 
 
-def _tolerances(unit: Unit, found: _Found) -> None:
+def _tolerances(unit: Unit, found: Lines) -> None:
     """Point out guaranteed impedances whose tolerance the duty does not take off."""
     rows = table("iec60076_1_2011_impedance_tolerance")
     for row in unit.impedances:
@@ -182,78 +128,7 @@ def _tolerances(unit: Unit, found: _Found) -> None:
         found.points.append(OpenPoint(point, text, values, rows.source.citation))
 
 
-def _system(unit: Unit, rules: RuleSet, name: str, category: Category, found: _Found) -> SystemUsed | None:
-    source, winding = unit.system.terminals[name], unit.windings[name]
-    if source.short_circuit_power is None:
-        return None
-    head = f"requirement.{name}"
-    power = _power(unit, rules, name, source)
-    found.tabled(f"{head}.short_circuit_power", power, "S", f"short-circuit power at {name}")
-    ratios = _ratios(rules, name, source, found)
-    if power.value is None:
-        key = f"system.{name}.short_circuit_power"
-        found.missing.append(Missing(f"{head}.short_circuit_power", (key,), power.note))
-        return SystemUsed(name, power, {}, ratios)
-    at = source.voltage or winding.rated_voltage
-    impedance = found.step(
-        system_impedance.step(
-            f"{head}.system_impedance", system_voltage=at, short_circuit_power=Quantity(power.value, "MVA")
-        ),
-        f"impedance of the network at {name}",
-    )
-    neglect = {}
-    for other in unit.windings:
-        step = None if other == name else _share(unit, name, other, impedance, found)
-        if step is not None:
-            neglect[other] = rules.source_neglected(category.name, step.result.to("p.u."))
-            found.asked[-1] = Asked(found.asked[-1].label, found.asked[-1].outcome, neglect[other].reason)
-    return SystemUsed(name, power, neglect, ratios)
-
-
-def _power(unit: Unit, rules: RuleSet, name: str, source: Source) -> Tabled:
-    """Return the short-circuit power: as given, else of the standard's table for the highest voltage."""
-    given = source.short_circuit_power
-    if isinstance(given, Quantity):
-        return Tabled(given.to("MVA"), "MVA", f"unit file, system.{name}.short_circuit_power", "maker", "H", "as given")
-    highest = unit.windings[name].highest_voltage
-    if highest is None:
-        reason = f"the table needs windings.{name}.highest_voltage"
-        return Tabled(None, "MVA", f"unit file, system.{name}.short_circuit_power", "maker", "H", reason)
-    return rules.system_short_circuit_power(highest.to("kV"), source.column)
-
-
-def _ratios(rules: RuleSet, name: str, source: Source, found: _Found) -> tuple[Tabled, ...]:
-    if source.x0_over_x1 is not None:
-        where = f"unit file, system.{name}.x0_over_x1"
-        given = Tabled(source.x0_over_x1, "1", where, "maker", "H", "as given")
-        found.tabled(f"requirement.{name}.x0_over_x1", given, "X_0/X_1", f"zero sequence of the network at {name}")
-        return (given,)
-    scan = rules.x0_over_x1_scan()
-    ends = ("x0_over_x1",) if len(scan) == 1 else ("x0_over_x1_least", "x0_over_x1_greatest")
-    for end, tabled in zip(ends, scan, strict=True):
-        found.tabled(f"requirement.{name}.{end}", tabled, "X_0/X_1", f"zero sequence of the network at {name}")
-    return scan
-
-
-def _share(unit: Unit, name: str, other: str, impedance: Step, found: _Found) -> Step | None:
-    row = unit.impedance(name, other)
-    if row is None:
-        return None
-    head = f"requirement.{name}.to_{other}"
-    own = transformer_impedance.step(
-        f"{head}.transformer_impedance",
-        impedance_ratio=row.impedance,
-        rated_voltage=unit.windings[name].rated_voltage,
-        rated_power=three_phase_power(unit, row.base_power),
-    )
-    found.step(own, f"impedance of {name}-{other} seen from {name}")
-    share = system_share.step(
-        f"{head}.system_share", system_impedance=impedance.result, transformer_impedance=own.result
-    )
-    return found.step(share, f"network at {name} over {name}-{other}")
-
-
-def _durations(unit: Unit, rules: RuleSet, duty: DutyLike, category: Category, found: _Found) -> None:
+def _durations(unit: Unit, rules: RuleSet, duty: DutyLike, category: Category, found: Lines) -> None:
     """State duration and ceiling of every winding."""
     lowest = min(w.rated_voltage.to("kV") for w in unit.windings.values())
     for name, winding in unit.windings.items():
@@ -271,21 +146,21 @@ def _durations(unit: Unit, rules: RuleSet, duty: DutyLike, category: Category, f
         _above_ceiling(name, multiple, ceiling, found)
 
 
-def _shorter(name: str, taken: Tabled, asked: Tabled, found: _Found) -> None:
+def _shorter(name: str, taken: Tabled, asked: Tabled, found: Lines) -> None:
     if taken.value is not None and asked.value is not None and taken.value < asked.value:
         text = f"{name}: the review takes a duration of {{taken}}; without an agreement the standard asks {{asked}}."
         values = {"taken": Quantity(taken.value, "s"), "asked": Quantity(asked.value, "s")}
         found.points.append(OpenPoint(f"requirement.{name}.duration", text, values, asked.source))
 
 
-def _above_ceiling(name: str, multiple: float | None, ceiling: Tabled, found: _Found) -> None:
+def _above_ceiling(name: str, multiple: float | None, ceiling: Tabled, found: Lines) -> None:
     if multiple is not None and ceiling.value is not None and multiple > ceiling.value:
         text = f"{name}: the duty is {{multiple}} times base; the standard asks no more than {{ceiling}} times."
         values = {"multiple": Quantity(multiple, "1"), "ceiling": Quantity(ceiling.value, "1")}
         found.points.append(OpenPoint(f"requirement.{name}.ceiling", text, values, ceiling.source))
 
 
-def _faults(duty: DutyLike, found: _Found) -> tuple[FaultKind, ...]:
+def _faults(duty: DutyLike, found: Lines) -> tuple[FaultKind, ...]:
     """Count the cases the standard requires and those beyond it, by kind of fault."""
     kinds: dict[str, list[int]] = {}
     for entry in duty.entries:

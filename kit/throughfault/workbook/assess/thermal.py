@@ -8,9 +8,9 @@ from throughfault.cells import thermal_withstand as withstand
 from throughfault.declare import Check, Fragment, Limit, Missing, OpenPoint, Outcome, Step
 from throughfault.errors import OutsideValidity
 from throughfault.numerics.case import Floats
-from throughfault.numerics.heat import Shots, repeated_shots
+from throughfault.numerics.heat import Shots
 from throughfault.quantities import Quantity
-from throughfault.tables import table
+from throughfault.workbook.assess.reclosing import reclosing
 from throughfault.workbook.assess.rules import LimitOrReason, RuleSet, Tabled, category_of
 from throughfault.workbook.assess.thermal_inputs import (
     DutyLike,
@@ -22,7 +22,7 @@ from throughfault.workbook.assess.thermal_inputs import (
     outcome_of,
     start_of,
 )
-from throughfault.workbook.assess.thermal_method import METHODS, comparison_steps, conductor_of, curve_of
+from throughfault.workbook.assess.thermal_method import METHODS, comparison_steps, curve_of
 from throughfault.workbook.assess.through_fault import ThroughFault, assess_through_fault
 from throughfault.workbook.assess.winding_current import multiple_step, rated_steps
 from throughfault.workbook.inputs import Unit
@@ -190,26 +190,20 @@ def _not_assessed(common: _Common, limit: LimitOrReason, missing: Missing, steps
 def _assessed(
     common: _Common, limit: LimitOrReason, given: HeatInputs, steps: list[Step], frequency: Quantity
 ) -> WindingThermal:
-    prefix = f"thermal.{given.winding}"
-    quantities = [*common.outcomes, *_multiple_outcome(common, steps)]
     density = withstand.current_density.step(
-        f"{prefix}.density", winding_current=given.current, conductor_section=given.section
+        f"thermal.{given.winding}.density", winding_current=given.current, conductor_section=given.section
     )
-    quantities.append(Outcome.of_step(density, governing_case=given.case))
     temperature, found = _deciding(common, given, density)
-    quantities.append(temperature)
     allowed, more = _permissible(common, given, density, limit.limit)
-    quantities.append(allowed)
     beside = comparison_steps(given, density, frequency, common.method)
+    again, shots = reclosing(given, density)
     shown = {k: (LABELS[k], Outcome.of_step(s[-1], governing_case=given.case)) for k, s in beside.items()}
-    again, shots = _reclosing(given, density)
-    every = [*steps, density, *found, *more, *(step for s in beside.values() for step in s), *again]
-    quantities += [outcome for _, outcome in shown.values()]
-    quantities += [Outcome.of_step(step, governing_case=given.case) for step in again[-1:]]
     check, missing = _check(temperature, limit, given.case)
-    fragment = Fragment(
-        tuple(quantities), tuple(every), (check,), missing=missing, open_points=_points(given, check, shown)
-    )
+    worked = [Outcome.of_step(step, governing_case=given.case) for step in (density, *again[-1:])]
+    quantities = (*common.outcomes, *_multiple_outcome(common, steps), worked[0], temperature, allowed)
+    quantities = (*quantities, *(outcome for _, outcome in shown.values()), *worked[1:])
+    every = (*steps, density, *found, *more, *(step for s in beside.values() for step in s), *again)
+    fragment = Fragment(quantities, every, (check,), missing=missing, open_points=_points(given, check, shown))
     until = BEYOND * max(given.duration.to("s"), allowed.value or 0.0)
     constant = beside["offset"][0].result.value if "offset" in beside else None
     return _made(
@@ -277,38 +271,3 @@ def _points(given: HeatInputs, check: Check, shown: dict[str, tuple[str, Outcome
             values = {"other": Quantity(other.value, "degC"), "limit": Quantity(check.limit.value, "degC")}
             points.append(OpenPoint(f"{other.id}.above_limit", text, values, check.limit.source))
     return tuple(points)
-
-
-def _reclosing(given: HeatInputs, density: Step) -> tuple[tuple[Step, ...], Shots | None]:
-    """Work out a second fault after a reclosing pause, for information; the slowest cooling is taken."""
-    pause = table("reclosing").rows[0]
-    cooling = Quantity(table("winding_cooling").rows[0]["greatest"], "min")
-    material = conductor_of(given)
-    prefix = f"thermal.{given.winding}.reclosing"
-    constants = {
-        "thermal_constant": Quantity(material.constant, "A^2 s/mm^4"),
-        "temperature_offset": Quantity(material.offset, "K"),
-    }
-    try:
-        heat = withstand.heat_integral.step(
-            f"{prefix}.heat_integral", current_density=density.result, duration=given.duration
-        )
-        exact = withstand.exact_temperature
-        first = exact.step(f"{prefix}.first", initial_temperature=given.start, heat_integral=heat.result, **constants)
-        rested = withstand.temperature_after_pause.step(
-            f"{prefix}.after_pause",
-            conductor_temperature=first.result,
-            initial_temperature=given.start,
-            dead_time=Quantity(pause["dead_time"], "s"),
-            cooling_time_constant=cooling,
-        )
-        second = exact.step(
-            f"{prefix}.second", initial_temperature=rested.result, heat_integral=heat.result, **constants
-        )
-    except OutsideValidity:
-        return (), None
-    shots = repeated_shots(
-        given.start.to("degC"), density.result.value, type(material)(material.constant, material.offset),
-        duration=given.duration.to("s"), pause=pause["dead_time"], count=int(pause["shots"]), cooling=cooling.to("s"),
-    )  # fmt: skip
-    return (heat, first, rested, second), shots

@@ -25,7 +25,7 @@ from throughfault.workbook.assess.rules import RuleSet, Tabled, category_of
 from throughfault.workbook.assess.rules_ieee import IEEEC57_12_00_2015
 from throughfault.workbook.inputs import Unit
 
-__all__ = ["OwnPoint", "ThroughFault", "assess_through_fault"]
+__all__ = ["OwnPoint", "ThroughFault", "assess_through_fault", "category_of"]
 
 POINTS = 60
 
