@@ -27,6 +27,7 @@ from platformdirs import user_cache_path
 __all__ = ["FAMILY", "code_points", "font_face", "subset"]
 
 FAMILY = "Record Math"
+ROOT = ord("√")
 _MATH = re.compile(r"<math\b.*?</math>", re.DOTALL)
 _ANNOTATION = re.compile(r"<annotation\b.*?</annotation>|<[^>]*>", re.DOTALL)
 #: letters a one-letter identifier is slanted to by the browser: a-z, A-Z, Greek
@@ -60,8 +61,30 @@ def code_points(page: str) -> frozenset[int]:
     """Collect the characters that the formulas of a page show, upright and slanted, and the signs drawn unasked."""
     shown = "".join(html.unescape(_ANNOTATION.sub("", formula)) for formula in _MATH.findall(page))
     slanted = (_slanted(letter) for letter in set(shown))
-    roots = {ord("√")} if "<msqrt" in page or "<mroot" in page else set()  # an element's sign, no character
+    roots = {ROOT} if "<msqrt" in page or "<mroot" in page else set()  # an element's sign, no character
     return frozenset({*map(ord, shown), *(point for point in slanted if point is not None), *roots})
+
+
+def _even_roots(font: TTFont) -> None:
+    """Make every size of the root's sign as wide as the smallest.
+
+    Browsers reserve the width of the widest size for each root, which leaves a gap behind small ones.
+    """
+    root = font.getBestCmap().get(ROOT)
+    variants = font["MATH"].table.MathVariants
+    if root is None or root not in variants.VertGlyphCoverage.glyphs:
+        return
+    built = variants.VertGlyphConstruction[variants.VertGlyphCoverage.glyphs.index(root)]
+    parts = built.GlyphAssembly.PartRecords if built.GlyphAssembly else []
+    names = {v.VariantGlyph for v in built.MathGlyphVariantRecord} | {part.glyph for part in parts}
+    width = font["hmtx"][root][0]
+    for name in sorted(names - {root}):
+        advance, bearing = font["hmtx"][name]
+        glyph = font["glyf"][name]
+        glyph.coordinates.scale((width / advance, 1.0))
+        glyph.coordinates.toInt()
+        glyph.recalcBounds(font["glyf"])
+        font["hmtx"][name] = (width, round(bearing * width / advance))
 
 
 def _make(font: bytes, points: Iterable[int]) -> bytes:
@@ -74,6 +97,7 @@ def _make(font: bytes, points: Iterable[int]) -> bytes:
     subsetter = Subsetter(options)
     subsetter.populate(unicodes=points)
     subsetter.subset(loaded)
+    _even_roots(loaded)
     loaded.flavor = "woff"
     out = BytesIO()
     loaded.save(out, reorderTables=True)
@@ -95,7 +119,8 @@ def subset(points: frozenset[int]) -> bytes:
     """Return the font cut to `points` as WOFF, tables for mathematics kept."""
     font = _font_bytes()
     key = hashlib.sha256(font)
-    key.update(f"{sorted(points)} fonttools {version('fonttools')} zlib {zlib.ZLIB_RUNTIME_VERSION}".encode())
+    made_by = f"fonttools {version('fonttools')} zlib {zlib.ZLIB_RUNTIME_VERSION} even roots"
+    key.update(f"{sorted(points)} {made_by}".encode())
     path = user_cache_path("throughfault") / "fonts" / f"{key.hexdigest()}.woff"
     try:
         cached = path.read_bytes()

@@ -83,7 +83,8 @@ def _values(case: Entry, kind: str, name: str, phases: Sequence[str]) -> tuple[l
 
 
 def _case_body(case: Entry, kind: str, phases: Sequence[str], decimals: int) -> Markup:
-    asked = Markup("") if case["required_by_standard"] else Markup('<br><span class="extra">extra to the standard</span>')
+    extra = Markup('<br><span class="extra">extra to the standard</span>')
+    asked = Markup("") if case["required_by_standard"] else extra
     head = Markup('<th scope="rowgroup" rowspan="{}">{}{}</th>').format(len(case[kind]), breakable(case["id"]), asked)
     rows = []
     for name in case[kind]:

@@ -18,7 +18,9 @@ POLICY = (
     "base-uri 'none'; form-action 'none'"
 )
 _FRAME = {"html", "head", "meta", "title", "style", "body", "header", "main", "footer", "h1"}
-_FRAME_ATTRIBUTES = {"html": {"lang"}, "title": {"class"}, "meta": {"charset", "content", "http-equiv", "name"}, "main": {"tabindex"}}
+_FRAME_ATTRIBUTES = {
+    "html": {"lang"}, "main": {"tabindex"}, "meta": {"charset", "content", "http-equiv", "name"}, "title": {"class"},
+}  # fmt: skip
 _META = {"viewport", "generator", "color-scheme"}
 _LOADING = re.compile(r"@import|url\(\s*['\"]?(?!data:font/woff;base64,)|expression\(|-moz-binding", re.IGNORECASE)
 
