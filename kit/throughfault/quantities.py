@@ -10,6 +10,7 @@ from __future__ import annotations
 import math
 import re
 from dataclasses import dataclass
+from datetime import date, time
 from functools import lru_cache
 
 import pint
@@ -166,7 +167,9 @@ def shown(text: object) -> str:
         return "a table" if isinstance(text, dict) else "an array"
     if isinstance(text, int) and abs(text) >= 10**LONGEST_TEXT:
         return f"a whole number of more than {LONGEST_TEXT} digits"
-    whole = repr(text)
+    if isinstance(text, bool):
+        return str(text).lower()
+    whole = str(text) if isinstance(text, date | time) else repr(text)
     return whole if len(whole) <= LONGEST_TEXT else f"{whole[:40]}... ({len(whole)} characters)"
 
 
@@ -188,9 +191,8 @@ def parse(text: object, unit: str) -> Quantity:
         raise QuantityError(wanted + problem)
     found = match[2]
     if found not in UNITS:
-        raise QuantityError(
-            f"{wanted}, got {shown(text)} with unknown unit '{found}'{did_you_mean(found, KINDS[UNITS[unit][0]])}."
-        )
+        near = did_you_mean(found, KINDS[UNITS[unit][0]])
+        raise QuantityError(f"{wanted}, got {shown(text)} with unknown unit {found!r}{near}.")
     if UNITS[found][0] != UNITS[unit][0]:
         raise QuantityError(f"{wanted}, got {shown(text)}, which is of kind {UNITS[found][0]}.")
     value = float(match[1])
