@@ -155,7 +155,8 @@ def duty(book: Workbook) -> Shown:
     found = book.review.duty
     figures = duty_figures(found)
     algorithms = [made for made in _used(found.fragment) if isinstance(made, Algorithm)]
-    return Shown(duty_part(found.fragment.entry(), found.fragment.steps, figures, algorithms), book.emit(found.fragment))
+    html = duty_part(found.fragment.entry(), found.fragment.steps, figures, algorithms)
+    return Shown(html, book.emit(found.fragment))
 
 
 def thermal(book: Workbook) -> Shown:

@@ -2,13 +2,21 @@
 
 from __future__ import annotations
 
-from typing import Any
-
 from markupsafe import Markup
 
+from throughfault.render.html import clause, identity
 from throughfault.render.parts.result import case_name
-from throughfault.render.plots import duty_by_case, fault_wave, figure_html
+from throughfault.render.plots import (
+    Curve,
+    UnitPoint,
+    duty_by_case,
+    fault_wave,
+    figure_html,
+    temperature_curve,
+    through_fault_curve,
+)
 from throughfault.workbook.assess.duty import Duty
+from throughfault.workbook.assess.thermal import Thermal
 
 __all__ = ["duty_figures", "thermal_figures"]
 
@@ -27,14 +35,38 @@ def _wave(duty: Duty, name: str) -> Markup:
     wave = duty.waves[name]
     if wave is None:
         return Markup("")
-    drawn = fault_wave(wave.time, wave.current, offset=wave.direct, envelope=wave.upper, peak=(wave.peak_time, wave.peak))
-    caption = Markup('Winding <span class="identity">{}</span>: exact current in case {}, closed at the worst angle.').format(
-        name, case_name(wave.case)
+    peak = (wave.peak_time, wave.peak)
+    drawn = fault_wave(wave.time, wave.current, offset=wave.direct, envelope=wave.upper, peak=peak)
+    caption = Markup("Winding {}: exact current in case {}, closed at the worst angle.").format(
+        identity(name), case_name(wave.case)
     )
     alternative = f"Offset fault current of winding {name} over time with its decaying offset, envelope and first peak."
     return figure_html(drawn, f"figure-wave-{name}", caption, alternative)
 
 
-def thermal_figures(thermal: Any) -> list[Markup]:
-    """Return the temperature curve and the through-fault curve."""
-    return []
+def thermal_figures(thermal: Thermal) -> list[Markup]:
+    """Return the temperature of every winding over time, and the through-fault curve with the unit's own points."""
+    figures = []
+    curves = {name: w.curve for name, w in thermal.windings.items() if w.curve}
+    if curves:
+        limits = {name: w.limit.value for name, w in thermal.windings.items() if w.limit is not None}
+        drawn = temperature_curve({name: (c["time"], c["standard"]) for name, c in curves.items()}, limits)
+        caption = "Temperature of every winding by the deciding form while its largest symmetrical current flows."
+        alternative = "Temperature of each winding over the duration of the fault, with the permitted temperature."
+        figures.append(figure_html(drawn, "figure-temperature", caption, alternative))
+    if thermal.through_fault.points:
+        figures.append(_through_fault(thermal))
+    return figures
+
+
+def _through_fault(thermal: Thermal) -> Markup:
+    found = thermal.through_fault
+    curves = [Curve("thermal", *found.thermal)]
+    if found.mechanical is not None:
+        curves.append(Curve("mechanical, frequent faults", *found.mechanical))
+    points = [UnitPoint(f"winding {p.winding}", p.multiple, p.duration) for p in found.points]
+    caption = Markup("Through-fault curve by {}, with the unit's own points; for information, not a check.").format(
+        clause("IEEEC57.109-2018")
+    )
+    alternative = "Permissible duration against current on logarithmic axes, with one point for each winding."
+    return figure_html(through_fault_curve(curves, points), "figure-through-fault", caption, alternative)

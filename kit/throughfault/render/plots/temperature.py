@@ -17,8 +17,7 @@ MARKS = 6  # markers along a curve
 
 
 def temperature_curve(
-    time: Sequence[float] | Array,
-    temperature: Mapping[str, Sequence[float] | Array],
+    temperature: Mapping[str, tuple[Sequence[float] | Array, Sequence[float] | Array]],
     limit: Mapping[str, float],
     duration: float | None = None,
 ) -> Figure:
@@ -26,10 +25,8 @@ def temperature_curve(
 
     Parameters
     ----------
-    time
-        Instants in s, shape (n,).
     temperature
-        In degC by winding, shape (n,).
+        By winding: instants in s and temperatures in degC, both of shape (n,).
     limit
         Permitted temperature in degC by name of what it holds for; equal ones are drawn once.
     duration
@@ -37,7 +34,7 @@ def temperature_curve(
     """
     with look():
         drawn, (ax,) = axes(3.1)
-        for number, (name, values) in enumerate(temperature.items()):
+        for number, (name, (time, values)) in enumerate(temperature.items()):
             marks = {"marker": MARKERS[number % len(MARKERS)], "markevery": max(1, len(values) // MARKS)}
             line = {"color": INK, "linestyle": LINES[number % len(LINES)], "markerfacecolor": "white"}
             ax.plot(time, values, label=name, markersize=4.5, **marks, **line)
@@ -46,7 +43,7 @@ def temperature_curve(
         for value in dict.fromkeys(limit.values()):
             names = ", ".join(name for name, held in limit.items() if held == value)
             ax.axhline(value, color=ACCENT, linewidth=1.6)
-            ax.annotate(f"limit {value:g} °C ({names})", (time[0], value), xytext=(4, 4), textcoords="offset points",
+            ax.annotate(f"limit {value:g} °C ({names})", (0.0, value), xytext=(4, 4), textcoords="offset points",
                         color=ACCENT, fontweight="bold")  # fmt: skip
         if duration is not None:
             ax.axvline(duration, color=INK, linewidth=0.8, linestyle=LINES[2])
