@@ -9,6 +9,8 @@ from throughfault.workbook.inputs.measures import ByTapping, Measure
 from throughfault.workbook.inputs.section import Section
 from throughfault.workbook.inputs.vocabulary import (
     DESIGN,
+    MOST_BLOCKS,
+    MOST_COILS,
     Area,
     Force,
     Height,
@@ -113,7 +115,7 @@ class Coil(Section):
     half: Annotated[Literal[1, 2] | None, OneOf((1, 2))] = key(
         "Half of a zigzag winding the coil belongs to.", DESIGN, default=None
     )
-    blocks: tuple[Block, ...] = key("Parts of the coil.", DESIGN, at_least=1)
+    blocks: tuple[Block, ...] = key("Parts of the coil.", DESIGN, at_least=1, at_most=MOST_BLOCKS)
     conductor: Conductor = key("Its conductor.", DESIGN)
     supports: Supports | None = key("Its supports.", DESIGN, default=None)
 
@@ -123,7 +125,11 @@ class Clamping(Section):
 
     clamping_force: Force | None = key("Clamping force of one limb at assembly.", DESIGN, default=None)
     clamping_share: dict[Name, Annotated[float, Number(most=1.0, least_allowed=True)]] = key(
-        "Share of the clamping force on each coil.", DESIGN, default={}, in_words="by bearing area"
+        "Share of the clamping force on each coil.",
+        DESIGN,
+        default={},
+        in_words="by bearing area",
+        at_most=MOST_COILS,
     )
     ring_inner_radius: Length | None = key("Inner radius of the press ring.", DESIGN, default=None)
     ring_outer_radius: Length | None = key("Outer radius of the press ring.", DESIGN, default=None)
@@ -143,5 +149,5 @@ class Design(Section):
     """The mechanical design."""
 
     core: Core = key("Core.", DESIGN)
-    coils: tuple[Coil, ...] = key("Physical coils, innermost first.", DESIGN, at_least=1)
+    coils: tuple[Coil, ...] = key("Physical coils, innermost first.", DESIGN, at_least=1, at_most=MOST_COILS)
     clamping: Clamping | None = key("Clamping structure.", DESIGN, default=None)

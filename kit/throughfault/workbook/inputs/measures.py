@@ -9,6 +9,7 @@ from throughfault.errors import QuantityError
 from throughfault.quantities import KINDS, UNITS, Quantity, expectation, parse, parse_impedance, shown
 from throughfault.workbook.inputs.leaves import NAME, Leaf, Refused, nearest
 
+MOST_TAPPINGS = 60  # far more than any unit has
 LARGEST = 1e9  # in the unit of the model; far beyond any transformer, far below an overflow
 NUMBER_PATTERN = r"[+-]?([0-9]+(\.[0-9]*)?|\.[0-9]+)([eE][+-]?[0-9]{1,3})?"
 
@@ -32,13 +33,16 @@ class Measure(Leaf):
         """Units allowed."""
         return ", ".join(KINDS[UNITS[self.typical][0]])
 
-    @property
-    def range(self) -> str:
-        """The range in words."""
-        if self.least == 0.0 and self.most == LARGEST:
-            return "zero or positive" if self.least_allowed else "positive"
-        lower = f"from {self.least:g}" if self.least_allowed else f"above {self.least:g}"
-        return f"{lower} to {self.most:g} {self.typical}"
+    def _range(self, number: float) -> str:
+        """Say which range was missed."""
+        kind = UNITS[self.typical][0]
+        article = "an" if kind[0] in "aeiou" else "a"
+        if self.most < LARGEST:
+            lower = "from" if self.least_allowed else "above"
+            return f"{article} {kind} {lower} {self.least:g} to {self.most:g} {self.typical}"
+        if number > 0.0:
+            return f"{article} {kind} from {1.0 / LARGEST:g} to {LARGEST:g} {self.typical}"
+        return f"zero or a positive {kind}" if self.least_allowed else f"a positive {kind}"
 
     def read(self, value: object) -> Quantity:
         """Read text such as "132 kV"."""
@@ -51,7 +55,7 @@ class Measure(Leaf):
         number = quantity.to(self.typical)
         inside = self.least <= number <= self.most and (self.least_allowed or number != self.least)
         if not inside or 0.0 < abs(number) < 1.0 / LARGEST:
-            raise Refused(f"must be {self.range}, got {shown(value)}.")
+            raise Refused(f"must be {self._range(number)}, got {shown(value)}.")
         return quantity
 
     def schema(self) -> dict[str, Any]:
@@ -147,6 +151,8 @@ class ByTapping(Leaf):
             return self.leaf.read(value)
         if not value:
             raise Refused("must name at least one tapping, got an empty table.")
+        if len(value) > MOST_TAPPINGS:
+            raise Refused(f"must name at most {MOST_TAPPINGS} tappings, got {len(value)}.")
         made = {}
         for name, item in value.items():
             if not NAME.fullmatch(name):

@@ -16,8 +16,9 @@ from throughfault.workbook.inputs.lines import KeyPath, line_of, path_text
 from throughfault.workbook.inputs.model import UnitFile
 from throughfault.workbook.inputs.section import Section
 
-__all__ = ["Fault", "faults_of", "report"]
+__all__ = ["Fault", "faults_of", "report", "unknown_name"]
 
+MOST_FAULTS = 500  # a reader needs no more
 #: what stands in the model but not in the file
 _INNER = ("system", "terminals")
 
@@ -34,13 +35,19 @@ def report(name: str, faults: Iterable[Fault], places: dict[KeyPath, list[int]])
     """Write the faults in the order of the file, each with file, line and key path."""
     placed = [(line_of(fault.path, places), path_text(fault.path), fault.text) for fault in faults]
     placed.sort(key=lambda p: p[0] or 0)
-    return [f"{name}: {f'[line {line}] ' if line else ''}{path}: {text}" for line, path, text in placed]
+    more = [f"{name}: {len(placed) - MOST_FAULTS} more faults."] if len(placed) > MOST_FAULTS else []
+    told = [
+        f"{name}: {f'[line {line}] ' if line else ''}{path}: {text}"
+        for line, path, text in placed[:MOST_FAULTS]
+    ]
+    return told + more
 
 
 def faults_of(error: ValidationError) -> Iterator[Fault]:
     """Translate what the model found."""
-    for entry in error.errors(include_url=False):
-        location = tuple(entry["loc"])
+    entries = error.errors(include_url=False)
+    locations = [tuple(entry["loc"]) for entry in entries]
+    for entry, location in zip(entries, locations, strict=True):
         path = _file_path(location)
         if entry["type"] == "extra_forbidden":
             yield Fault(path, _unknown(location))
@@ -51,12 +58,29 @@ def faults_of(error: ValidationError) -> Iterator[Fault]:
         elif entry["type"] == "refused":
             yield Fault(path, f"{str(entry['msg']).removesuffix('.')}{_source(location)}.")
         elif entry["type"] == "too_short":
-            yield Fault(
-                path,
-                f"must have at least {entry['ctx']['min_length']} entries, got {entry['ctx']['actual_length']}.",
-            )
+            if not any(
+                _inside(other, location) for other in locations
+            ):  # else the entries have faults of their own
+                least, got = entry["ctx"]["min_length"], entry["ctx"]["actual_length"]
+                yield Fault(
+                    path,
+                    "must not be empty." if least == 1 else f"must have at least {least} entries, got {got}.",
+                )
+        elif entry["type"] == "too_long":
+            yield Fault(path, f"must have at most {entry['ctx']['max_length']} entries.")
         else:  # a table or an array of tables was wanted
             yield Fault(path, f"must be {_wanted(location)}, got {shown(entry['input'])}.")
+
+
+def unknown_name(name: str, known: Iterable[str]) -> str:
+    """Return the nearest known name, and the known ones."""
+    names = list(known)
+    shown_names = ", ".join(names[:12]) + (", ..." if len(names) > 12 else "")
+    return f"{did_you_mean(name, names)}; known: {shown_names}."
+
+
+def _inside(location: KeyPath, table: KeyPath) -> bool:
+    return len(location) > len(table) and location[: len(table)] == table
 
 
 def _lowered(text: str) -> str:

@@ -12,7 +12,7 @@ from throughfault.workbook.inputs.rating import FORMAT, Identity, Rating, Standa
 from throughfault.workbook.inputs.section import Section
 from throughfault.workbook.inputs.system import Earthing, System, Withstand
 from throughfault.workbook.inputs.vector_group import VectorGroup, WindingConnection, parse_vector_group
-from throughfault.workbook.inputs.vocabulary import Name, key
+from throughfault.workbook.inputs.vocabulary import MOST_RESULTS, MOST_ROWS, MOST_WINDINGS, Name, key
 from throughfault.workbook.inputs.windings import PRINCIPAL, Winding
 
 
@@ -23,22 +23,33 @@ class UnitFile(Section):
     standard: Standard = key("Standard the review follows; without an edition the newest the kit carries.")
     identity: Identity = key("Whose transformer this is.")
     rating: Rating = key("The unit as a whole.")
-    windings: dict[Name, Winding] = key("Windings, in the order of the vector group's letters.", at_least=2)
-    impedances: tuple[ImpedanceRow, ...] = key("One row for each pair of windings and tapping.", at_least=1)
+    windings: dict[Name, Winding] = key(
+        "Windings, in the order of the vector group's letters.", at_least=2, at_most=MOST_WINDINGS
+    )
+    impedances: tuple[ImpedanceRow, ...] = key(
+        "One row for each pair of windings and tapping.", at_least=1, at_most=MOST_ROWS
+    )
     system: System = key("Networks at the terminals.", default=System())
     earthing: dict[Name, Earthing] = key(
         'Earthing of the neutrals: "solid", "isolated" or an impedance.',
         "network operator",
         default={},
+        at_most=MOST_WINDINGS,
         in_words="solid where the letter has N or n",
     )
     zero_sequence: ZeroSequence | None = key("Magnetising zero-sequence impedance.", default=None)
     tap_changer: Withstand | None = key("Tap changer.", default=None)
-    bushings: dict[Name, Withstand] = key("Bushings or leads, by winding.", default={})
-    neutral: dict[Name, Withstand] = key("Neutral bushings or leads, by winding.", default={})
+    bushings: dict[Name, Withstand] = key("Bushings or leads, by winding.", default={}, at_most=MOST_WINDINGS)
+    neutral: dict[Name, Withstand] = key(
+        "Neutral bushings or leads, by winding.", default={}, at_most=MOST_WINDINGS
+    )
     design: Design | None = key("Mechanical design.", default=None)
-    limits: dict[ResultId, Limit] = key("A signatory's own limits, by check id.", default={})
-    declared: dict[ResultId, Declared] = key("What the maker states, by result id.", default={})
+    limits: dict[ResultId, Limit] = key(
+        "A signatory's own limits, by check id.", default={}, at_most=MOST_RESULTS
+    )
+    declared: dict[ResultId, Declared] = key(
+        "What the maker states, by result id.", default={}, at_most=MOST_RESULTS
+    )
 
     @property
     def group(self) -> VectorGroup:

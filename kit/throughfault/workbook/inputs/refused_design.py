@@ -5,10 +5,11 @@ from __future__ import annotations
 import math
 from collections.abc import Iterator
 
-from throughfault.errors import did_you_mean
+import numpy as np
+
 from throughfault.workbook.inputs.design import Block, Coil, Design
 from throughfault.workbook.inputs.design_data import Described, phase_voltage, series_turns
-from throughfault.workbook.inputs.messages import Fault
+from throughfault.workbook.inputs.messages import Fault, unknown_name
 from throughfault.workbook.inputs.model import UnitFile
 from throughfault.workbook.inputs.windings import PRINCIPAL
 
@@ -17,21 +18,33 @@ REFUSED_TURNS = 0.10  # relative difference of the ratio of turns from that of t
 
 
 def turn_deviations(file: Described, design: Design) -> Iterator[tuple[str, str, str, float]]:
-    """Yield winding, reference winding, tapping and relative difference of the ratio of turns from the voltages."""
+    """Yield for each pair of wound windings the tapping at which turns and voltages differ most.
+
+    Yields
+    ------
+    tuple
+        Winding, reference winding, tapping, relative difference of the ratio of turns from that of the voltages.
+    """
     wound = [name for name in file.windings if series_turns(design, name) > 0.0]
     for name in wound[:-1]:
         reference = wound[-1]
         tapped = dict.fromkeys([PRINCIPAL, *file.windings[name].tappings, *file.windings[reference].tappings])
-        for tapping in tapped:
-            turns = [series_turns(design, n, tapping) for n in (name, reference)]
-            voltages = [phase_voltage(file, n, tapping) for n in (name, reference)]
-            if min(*turns, *voltages) > 0.0:  # else a fault of its own
-                yield name, reference, tapping, turns[0] / turns[1] * voltages[1] / voltages[0] - 1.0
+        found = {tapping: _deviation(file, design, (name, reference), tapping) for tapping in tapped}
+        worst = max(found, key=lambda tapping: abs(found[tapping]))
+        yield name, reference, worst, found[worst]
+
+
+def _deviation(file: Described, design: Design, pair: tuple[str, str], tapping: str) -> float:
+    turns = [series_turns(design, name, tapping) for name in pair]
+    voltages = [phase_voltage(file, name, tapping) for name in pair]
+    if min(*turns, *voltages) <= 0.0:  # a fault of its own
+        return 0.0
+    return turns[0] / turns[1] * voltages[1] / voltages[0] - 1.0
 
 
 def positive_turns(file: UnitFile, design: Design) -> Iterator[Fault]:
     """See that every wound winding has turns at every tapping."""
-    for name in dict.fromkeys(coil.winding for coil in design.coils):
+    for name in dict.fromkeys(coil.winding for coil in design.coils if coil.winding in file.windings):
         for tapping in file.tapping_names:
             turns = series_turns(design, name, tapping)
             if turns <= 0.0:
@@ -41,12 +54,15 @@ def positive_turns(file: UnitFile, design: Design) -> Iterator[Fault]:
 
 def turns_and_voltages(file: UnitFile, design: Design) -> Iterator[Fault]:
     """Compare the ratio of turns with that of the voltages."""
+    if any(coil.winding not in file.windings for coil in design.coils):
+        return  # a fault of its own; the turns of a winding are not all known
     for name, reference, tapping, off in turn_deviations(file, design):
         if abs(off) > REFUSED_TURNS:
-            text = f"have turns of '{name}' over '{reference}' at tapping '{tapping}' that are {100.0 * off:+.3g} % off"
-            yield Fault(
-                ("design", "coils"), f"{text} the ratio of the voltages; up to 10 % can be a rounding."
+            text = (
+                f"must have turns that follow the voltages within {100.0 * REFUSED_TURNS:g} %, got '{name}' over "
+                f"'{reference}' {100.0 * off:+.3g} % off at tapping '{tapping}'."
             )
+            yield Fault(("design", "coils"), text)
 
 
 def coil_names(_file: UnitFile, design: Design) -> Iterator[Fault]:
@@ -66,8 +82,8 @@ def coils_apart(_file: UnitFile, design: Design) -> Iterator[Fault]:
     for index, coil in enumerate(design.coils):
         for other in design.coils[:index]:
             across = _overlap(_radii(coil), _radii(other))
-            along = max(_overlap(_heights(a), _heights(b)) for a in coil.blocks for b in other.blocks)
-            if across > TOUCH and along > TOUCH:
+            along = _longest_overlap(_all_heights(coil), _all_heights(other)) if across > TOUCH else 0.0
+            if along > TOUCH:
                 text = (
                     f"overlaps coil '{other.name}' by {across:.4g} mm in radius and {along:.4g} mm in height."
                 )
@@ -92,7 +108,7 @@ def clamping(_file: UnitFile, design: Design) -> Iterator[Fault]:
     coils = [coil.name for coil in design.coils]
     for name in given.clamping_share:
         if name not in coils:
-            text = f"names '{name}', which is not a coil{did_you_mean(name, coils)}."
+            text = f"names '{name}', which is not a coil{unknown_name(name, coils)}"
             yield Fault((*path, "clamping_share"), text)
     total = sum(given.clamping_share.values())
     if given.clamping_share and not math.isclose(total, 1.0, abs_tol=0.01):
@@ -119,7 +135,7 @@ def coil_winding(file: UnitFile, design: Design, index: int) -> Iterator[Fault]:
     coil, path = design.coils[index], ("design", "coils", index)
     winding = file.windings.get(coil.winding)
     if winding is None:
-        text = f"names '{coil.winding}', which is not a winding{did_you_mean(coil.winding, file.windings)}."
+        text = f"names '{coil.winding}', which is not a winding{unknown_name(coil.winding, file.windings)}"
         yield Fault((*path, "winding"), text)
     elif winding.conductor_material is not None and winding.conductor_material != coil.conductor.material:
         text = f'is "{coil.conductor.material}", but windings.{coil.winding}.conductor_material is'
@@ -141,7 +157,7 @@ def coil_radii(_file: UnitFile, design: Design, index: int) -> Iterator[Fault]:
 def coil_blocks(file: UnitFile, design: Design, index: int) -> Iterator[Fault]:
     """See that the blocks stand in the window, apart, and know their tappings."""
     coil, path = design.coils[index], ("design", "coils", index, "blocks")
-    window = design.core.window_height
+    window, heights = design.core.window_height, _all_heights(coil)
     for number, block in enumerate(coil.blocks):
         if block.top.to("mm") <= block.bottom.to("mm"):
             yield Fault(
@@ -149,8 +165,8 @@ def coil_blocks(file: UnitFile, design: Design, index: int) -> Iterator[Fault]:
             )
         if block.top.to("mm") > window.to("mm") + TOUCH:
             yield Fault((*path, number), f"must end within the window, {window}, got top {block.top}.")
-        for other, before in enumerate(coil.blocks[:number]):
-            if _overlap(_heights(block), _heights(before)) > TOUCH:
+        for other in range(number):
+            if _overlap(heights[number], heights[other]) > TOUCH:
                 yield Fault((*path, number), f"overlaps block {other + 1} in height.")
         yield from _block_tappings(file, block, (*path, number, "turns"))
 
@@ -161,7 +177,7 @@ def _block_tappings(file: UnitFile, block: Block, path: tuple[str | int, ...]) -
     known = file.tapping_names
     for name in block.turns:
         if name not in known:
-            yield Fault(path, f"names '{name}', which is not a tapping{did_you_mean(name, known)}.")
+            yield Fault(path, f"names '{name}', which is not a tapping{unknown_name(name, known)}")
     missing = [name for name in known if name not in block.turns]
     if missing:
         yield Fault(path, f"must name every tapping; missing: {', '.join(missing)}.")
@@ -201,6 +217,17 @@ def _radii(coil: Coil) -> tuple[float, float]:
 
 def _heights(block: Block) -> tuple[float, float]:
     return block.bottom.to("mm"), block.top.to("mm")
+
+
+def _all_heights(coil: Coil) -> list[tuple[float, float]]:
+    return [_heights(block) for block in coil.blocks]
+
+
+def _longest_overlap(one: list[tuple[float, float]], other: list[tuple[float, float]]) -> float:
+    """Return the largest overlap of any two intervals [mm]."""
+    first, second = np.array(one), np.array(other)
+    tops = np.minimum.outer(first[:, 1], second[:, 1])
+    return float((tops - np.maximum.outer(first[:, 0], second[:, 0])).max())
 
 
 def _overlap(one: tuple[float, float], other: tuple[float, float]) -> float:

@@ -4,8 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 
-from throughfault.errors import did_you_mean
-from throughfault.workbook.inputs.messages import Fault
+from throughfault.workbook.inputs.messages import Fault, unknown_name
 from throughfault.workbook.inputs.model import UnitFile
 from throughfault.workbook.inputs.system import Source, Withstand
 
@@ -13,8 +12,8 @@ from throughfault.workbook.inputs.system import Source, Withstand
 def known_terminal(file: UnitFile, name: str) -> Iterator[Fault]:
     """Find networks at terminals that do not exist."""
     if name not in file.windings:
-        near = did_you_mean(name, [*file.windings, "prefault_voltage"])
-        yield Fault(("system", name), f"is not a winding{near}; windings: {', '.join(file.windings)}.")
+        near = unknown_name(name, [*file.windings, "prefault_voltage"])
+        yield Fault(("system", name), f"is not a winding{near}")
 
 
 def terminal_brought_out(file: UnitFile, name: str) -> Iterator[Fault]:
@@ -68,15 +67,15 @@ def prefault_tappings(file: UnitFile) -> Iterator[Fault]:
     given = file.system.prefault_voltage
     for name in given if isinstance(given, dict) else ():
         if name not in file.tapping_names:
-            near = did_you_mean(name, file.tapping_names)
-            yield Fault(("system", "prefault_voltage"), f"names '{name}', which is not a tapping{near}.")
+            near = unknown_name(name, file.tapping_names)
+            yield Fault(("system", "prefault_voltage"), f"names '{name}', which is not a tapping{near}")
 
 
 def earthed_winding(file: UnitFile, name: str) -> Iterator[Fault]:
     """Find earthing where there is no neutral."""
     path = ("earthing", name)
     if name not in file.windings:
-        yield Fault(path, f"is not a winding{did_you_mean(name, file.windings)}.")
+        yield Fault(path, f"is not a winding{unknown_name(name, file.windings)}")
     elif file.earthing[name] != "isolated":
         yield from _needs_neutral(file, name, path)
 
@@ -104,11 +103,11 @@ def components(file: UnitFile) -> Iterator[Fault]:
         yield from _peak_above_rms(file.tap_changer, ("tap_changer",))
     for name, component in file.bushings.items():
         if name not in file.windings:
-            yield Fault(("bushings", name), f"is not a winding{did_you_mean(name, file.windings)}.")
+            yield Fault(("bushings", name), f"is not a winding{unknown_name(name, file.windings)}")
         yield from _peak_above_rms(component, ("bushings", name))
     for name, component in file.neutral.items():
         if name not in file.windings:
-            yield Fault(("neutral", name), f"is not a winding{did_you_mean(name, file.windings)}.")
+            yield Fault(("neutral", name), f"is not a winding{unknown_name(name, file.windings)}")
         else:
             yield from _needs_neutral(file, name, ("neutral", name))
         yield from _peak_above_rms(component, ("neutral", name))

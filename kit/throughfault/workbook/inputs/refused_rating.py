@@ -126,7 +126,9 @@ def stabilising_first(file: UnitFile) -> Iterator[Fault]:
     """See that at least two windings are brought out."""
     out = [n for n, c in file.connections.items() if not (c.stabilising or file.windings[n].stabilising)]
     if len(out) < 2:
-        yield Fault(("windings",), "must have at least two windings that are brought out, not stabilising.")
+        yield Fault(
+            ("windings",), "must have at least two that are brought out; stabilising windings are not."
+        )
 
 
 RATING_CHECKS = (

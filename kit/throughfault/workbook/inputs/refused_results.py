@@ -4,11 +4,10 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 
-from throughfault.errors import did_you_mean
 from throughfault.quantities import UNITS, Quantity
 from throughfault.workbook.inputs.limits import ProofStressShare
 from throughfault.workbook.inputs.lines import KeyPath
-from throughfault.workbook.inputs.messages import Fault
+from throughfault.workbook.inputs.messages import Fault, unknown_name
 from throughfault.workbook.inputs.model import UnitFile
 
 #: families of results, and whether their second part names a winding, a coil or something else
@@ -78,24 +77,28 @@ def limits(file: UnitFile) -> Iterator[Fault]:
 def _known(file: UnitFile, result: str, path: KeyPath) -> Iterator[Fault]:
     family, name = result.split(".")[:2]
     if family not in FAMILIES:
-        known = ", ".join(FAMILIES)
-        yield Fault(path, f"is not a result: '{family}' is none of {known}{did_you_mean(family, FAMILIES)}.")
+        yield Fault(
+            path, f"is not a result: '{family}' is no family of results{unknown_name(family, FAMILIES)}"
+        )
         return
     names = _names(file, FAMILIES[family])
     if names and name not in names and not (family == "strength" and name == "clamping"):
         wanted = FAMILIES[family]
-        yield Fault(path, f"is not a result: '{name}' is not a {wanted}{did_you_mean(name, names)}.")
+        yield Fault(
+            path, f"is not a result: '{name}' is not a {wanted}{unknown_name(name, dict.fromkeys(names))}"
+        )
 
 
 def _names(file: UnitFile, wanted: str) -> list[str]:
     """Return the names that may stand second in an id; none where that cannot be told."""
     windings = list(file.windings)
     coils = [coil.name for coil in file.design.coils] if file.design is not None else windings
+    pairs = [f"{a}-{b}" for i, a in enumerate(windings) for b in windings[i + 1 :]]
     return {
         "winding": [*windings, "neutral"],
         "winding or coil": [*windings, *coils],
         "coil": coils,
-        "coil or pair": [*coils, *(f"{a}-{b}" for i, a in enumerate(windings) for b in windings[i + 1 :])],
+        "coil or pair": [*coils, *pairs],
     }.get(wanted, [])
 
 

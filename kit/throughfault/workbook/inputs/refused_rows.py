@@ -4,9 +4,8 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 
-from throughfault.errors import did_you_mean
 from throughfault.workbook.inputs.impedances import ImpedanceRow
-from throughfault.workbook.inputs.messages import Fault
+from throughfault.workbook.inputs.messages import Fault, unknown_name
 from throughfault.workbook.inputs.model import UnitFile
 from throughfault.workbook.inputs.vector_group import WindingConnection
 
@@ -18,15 +17,15 @@ def known_windings(file: UnitFile, index: int) -> Iterator[Fault]:
     """Find names that are no windings."""
     for name in file.impedances[index].between:
         if name not in file.windings:
-            near = did_you_mean(name, file.windings)
-            yield Fault(("impedances", index, "between"), f"names '{name}', which is not a winding{near}.")
+            near = unknown_name(name, file.windings)
+            yield Fault(("impedances", index, "between"), f"names '{name}', which is not a winding{near}")
 
 
 def known_tapping(file: UnitFile, index: int) -> Iterator[Fault]:
     """Find names that are no tappings."""
     tapping, known = file.impedances[index].tapping, file.tapping_names
     if tapping not in known:
-        text = f"is '{tapping}', which no winding has{did_you_mean(tapping, known)}; tappings: {', '.join(known)}."
+        text = f"is '{tapping}', which no winding has{unknown_name(tapping, known)}"
         yield Fault(("impedances", index, "tapping"), text)
 
 
@@ -113,7 +112,7 @@ def magnetising_winding(file: UnitFile) -> Iterator[Fault]:
         return
     at, path = file.zero_sequence.at, ("zero_sequence", "at")
     if at not in file.windings:
-        yield Fault(path, f"names '{at}', which is not a winding{did_you_mean(at, file.windings)}.")
+        yield Fault(path, f"names '{at}', which is not a winding{unknown_name(at, file.windings)}")
     elif not _reaches_earth(file, file.connections[at]):
         text = (
             f"names '{at}', which has no neutral in {file.group.symbol}: no zero-sequence current can enter."

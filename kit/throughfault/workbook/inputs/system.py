@@ -9,6 +9,7 @@ from throughfault.workbook.inputs.leaves import Number, OneOf
 from throughfault.workbook.inputs.measures import ByTapping, Either, Impedance, Measure
 from throughfault.workbook.inputs.section import Section
 from throughfault.workbook.inputs.vocabulary import (
+    MOST_WINDINGS,
     NETWORK,
     Angle,
     Current,
@@ -80,7 +81,9 @@ class System(Section):
             default=1.0,
         )
     )
-    terminals: dict[Name, Source] = key("One table for each terminal with a network behind it.", default={})
+    terminals: dict[Name, Source] = key(
+        "One table for each terminal with a network behind it.", default={}, at_most=MOST_WINDINGS
+    )
 
     @model_validator(mode="before")
     @classmethod

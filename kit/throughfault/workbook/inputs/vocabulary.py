@@ -18,7 +18,13 @@ ORDER = "order specification"
 
 
 def key(
-    meaning: str, source: str = "", *, default: Any = ..., in_words: str = "", at_least: int | None = None
+    meaning: str,
+    source: str = "",
+    *,
+    default: Any = ...,
+    in_words: str = "",
+    at_least: int | None = None,
+    at_most: int | None = None,
 ) -> Any:
     """Declare a key of the unit file.
 
@@ -28,19 +34,26 @@ def key(
         What the value means and where a user finds it.
     default, in_words
         Its default, and the default in words where None stands for something found later.
-    at_least
-        Fewest entries of an array or table.
+    at_least, at_most
+        Fewest and most entries of an array or table.
     """
     extra: JsonDict = {"source": source, "default_in_words": in_words}
-    if isinstance(default, Quantity | dict | tuple):
-        return Field(
-            default_factory=lambda: default, description=meaning, min_length=at_least, json_schema_extra=extra
-        )
-    return Field(default, description=meaning, min_length=at_least, json_schema_extra=extra)
+    given: dict[str, Any] = {"description": meaning, "json_schema_extra": extra}
+    given |= {"min_length": at_least, "max_length": at_most}
+    if isinstance(default, Quantity | dict):
+        return Field(default_factory=lambda: default, **given)
+    return Field(default, **given)
 
+
+#: most entries; far more than any unit has, few enough to compare each with each
+MOST_WINDINGS = 9
+MOST_ROWS = 2000
+MOST_COILS = 40
+MOST_BLOCKS = 200
+MOST_RESULTS = 1000
 
 Title = Annotated[str, Text()]
-Name = Annotated[str, Match(NAME, "a name of at most 16 letters, digits and underscores, first a letter")]
+Name = Annotated[str, Match(NAME, "at most 16 letters, digits and underscores, first a letter")]
 Yes = Annotated[bool, Flag()]
 Whole = Annotated[int, Count()]
 Ratio = Annotated[float, Number()]

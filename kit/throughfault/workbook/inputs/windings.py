@@ -4,7 +4,7 @@ from typing import Annotated
 
 from throughfault.quantities import Quantity
 from throughfault.workbook.inputs.leaves import Number
-from throughfault.workbook.inputs.measures import Measure
+from throughfault.workbook.inputs.measures import MOST_TAPPINGS, Measure
 from throughfault.workbook.inputs.section import Section
 from throughfault.workbook.inputs.vocabulary import (
     DESIGN,
@@ -61,6 +61,7 @@ class Winding(Section):
         'Tapping voltages by name; names are free, "principal" must be among them.',
         PLATE,
         default={},
+        at_most=MOST_TAPPINGS,
         in_words="principal only",
     )
     thermal_class: Class | None = key("As rating.thermal_class.", PLATE, default=None, in_words="as [rating]")
