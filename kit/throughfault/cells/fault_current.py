@@ -197,7 +197,7 @@ def delta_winding_current(
     title="Resistance from the load loss",
     source=Source("IEC60076-1:2011", "load loss and short-circuit impedance", "common practice"),
     valid_for=(Range("load_loss", at_least=0.0), Range("base_power", above=0.0)),
-    checks=("tests/published/fault_current.toml: the two low-voltage example transformers",),
+    checks=("tests/test_published_values.py: the two low-voltage transformers of the network standard",),
 )
 def resistance_ratio(
     load_loss: Annotated[float, nom.load_loss], base_power: Annotated[float, nom.base_power]
@@ -215,7 +215,7 @@ def resistance_ratio(
         Range("resistance_ratio", at_least=0.0),
         Condition("r_t not above z_t", lambda impedance_ratio, resistance_ratio: resistance_ratio <= impedance_ratio),
     ),
-    checks=("tests/published/fault_current.toml: the two low-voltage example transformers",),
+    checks=("tests/test_published_values.py: the two low-voltage transformers of the network standard",),
 )
 def reactance_ratio(
     impedance_ratio: Annotated[float, nom.impedance_ratio],

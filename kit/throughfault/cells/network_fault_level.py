@@ -29,7 +29,7 @@ def peak_factor_of_network(x_over_r: Annotated[float, nom.x_over_r]) -> Annotate
     title="Impedance correction of a network transformer",
     source=Source("IEC60909-0:2016", "3.3.3", "recalled"),
     valid_for=(Range("reactance_ratio", above=0.0, at_most=100.0), Range("voltage_factor", at_least=0.9, at_most=1.1)),
-    checks=("tests/published/fault_current.toml: the two low-voltage example transformers",),
+    checks=("tests/test_published_values.py: the two low-voltage transformers of the network standard",),
 )
 def network_impedance_correction(
     reactance_ratio: Annotated[float, nom.reactance_ratio], voltage_factor: Annotated[float, nom.voltage_factor]

@@ -1,0 +1,184 @@
+"""The contract that every registered cell keeps; new cells come under it by being declared."""
+
+import math
+import random
+import tomllib
+from pathlib import Path
+
+import numpy as np
+import pytest
+
+import throughfault.cells  # noqa: F401 - fills the registry
+from throughfault.declare import Algorithm, Cell, Condition, OpenPoint, Range, registry
+from throughfault.errors import OutsideValidity
+from throughfault.quantities import KINDS, UNITS, Quantity, convert
+
+ROOT = Path(__file__).parent.parent
+FORMULAS = [c for c in registry().values() if isinstance(c, Cell)]
+ALGORITHMS = [c for c in registry().values() if isinstance(c, Algorithm)]
+LIMITS = [(c, v) for c in FORMULAS for v in c.valid_for if isinstance(v, Range)]
+JOINT = [(c, v) for c in FORMULAS for v in c.valid_for if isinstance(v, Condition)]
+# where a range leaves an end open, values of the trade by unit
+USUAL = {
+    "MVA": (0.02, 500.0), "kV": (0.2, 500.0), "%": (0.5, 60.0), "ohm": (0.05, 80.0), "kW": (0.5, 900.0), "kA": (0.1, 80.0),
+    "A": (10.0, 9000.0), "1": (0.05, 30.0), "s": (0.05, 8.0), "A/mm^2": (5.0, 90.0), "mm^2": (5.0, 900.0),
+    "degC": (20.0, 200.0), "K": (225.0, 240.0), "Hz": (16.0, 60.0), "A^2 s/mm^4": (500.0, 40000.0), "p.u.": (0.02, 0.3),
+    "W/kg": (500.0, 60000.0), "W s/(kg K)": (380.0, 1500.0), "uohm m": (0.015, 0.03), "kg/m^3": (2600.0, 9000.0),
+}  # fmt: skip
+
+
+def ids(items):
+    return [getattr(item, "name", None) or f"{item[0].name}-{getattr(item[1], 'argument', 'joint')}" for item in items]
+
+
+def interval(cell, name):
+    """Ends of the samples of one argument: within its ranges, else the usual ones of its unit."""
+    low, high = USUAL[cell.arguments[name].unit]
+    for validity in cell.valid_for:
+        if isinstance(validity, Range) and validity.argument == name:
+            ends = [e for e in (validity.above, validity.at_least) if e is not None]
+            low = max([low, *ends]) if not ends or ends[0] < high else ends[0]
+            tops = [e for e in (validity.below, validity.at_most) if e is not None]
+            high = min([high, *tops])
+            if high <= low:
+                low = ends[0] if ends else 0.0
+    return low, high
+
+
+def sample(cell, rng, *, wanted=None):
+    """Draw arguments inside every range and condition; or, for `wanted`, inside all but that condition."""
+    for _ in range(100_000):
+        values = {name: rng.uniform(*interval(cell, name)) for name in cell.arguments}
+        if wanted is not None:  # a wider draw, so that a joint condition can be broken
+            values = {name: value * rng.choice([1, 1, 3, 10, 30]) for name, value in values.items()}
+        held = [v.holds(values) for v in cell.valid_for if v is not wanted]
+        if all(held) and (wanted is None or not wanted.holds(values)):
+            return values
+    raise AssertionError(f"{cell.name}: no sample found")
+
+
+def seeded(cell):
+    """Points of a cell are the same in every run."""
+    return random.Random(cell.name)  # noqa: S311 - sample points are no secrets
+
+
+def quantities(cell, values):
+    return {name: Quantity(value, cell.arguments[name].unit) for name, value in values.items()}
+
+
+@pytest.mark.parametrize("cell", FORMULAS, ids=ids(FORMULAS))
+def test_printed_formula_equals_the_function(cell):
+    """At random points inside the range the printed tree gives the function's number, finite."""
+    rng = seeded(cell)
+    for _ in range(50):
+        values = sample(cell, rng)
+        printed, _ = cell.formula.evaluate(values)
+        computed = cell(**values)
+        assert math.isfinite(computed)
+        assert printed == pytest.approx(computed, rel=1e-12, abs=1e-12)
+
+
+@pytest.mark.parametrize("cell", FORMULAS, ids=ids(FORMULAS))
+def test_result_does_not_depend_on_units(cell):
+    """The same arguments in any unit of their kind give the same result."""
+    rng = seeded(cell)
+    values = sample(cell, rng)
+    expected = cell.step("a", **quantities(cell, values)).result.value
+    for name, symbol in cell.arguments.items():
+        for unit in KINDS[UNITS[symbol.unit][0]]:
+            given = quantities(cell, values)
+            given[name] = Quantity(convert(values[name], symbol.unit, unit), unit)
+            assert cell.step("b", **given).result.value == pytest.approx(expected, rel=1e-9, abs=1e-9)
+
+
+@pytest.mark.parametrize(("cell", "validity"), LIMITS, ids=ids(LIMITS))
+def test_just_outside_a_range_is_refused(cell, validity):
+    """One step beyond each end is refused in a whole sentence; a closed end itself is inside."""
+    base = sample(cell, seeded(cell))
+    for end, outward, closed in (
+        (validity.above, -math.inf, False), (validity.at_least, -math.inf, True),
+        (validity.below, math.inf, False), (validity.at_most, math.inf, True),
+    ):  # fmt: skip
+        if end is None:
+            continue
+        assert validity.holds({**base, validity.argument: end}) is closed
+        beyond = math.nextafter(end, outward) if closed else end
+        got = Quantity(beyond, cell.arguments[validity.argument].unit)
+        with pytest.raises(OutsideValidity) as raised:
+            cell.step("a", **quantities(cell, {**base, validity.argument: beyond}))
+        assert str(raised.value) == (
+            f"{cell.name}: '{validity.argument}' must be {validity.text} {got.unit} "
+            f"({cell.source.citation}), got {got}."
+        )
+
+
+@pytest.mark.parametrize(("cell", "validity"), JOINT, ids=ids(JOINT))
+def test_a_broken_condition_is_refused(cell, validity):
+    """Inside every range but against a joint condition the cell refuses, and says the condition."""
+    values = sample(cell, seeded(cell), wanted=validity)
+    with pytest.raises(OutsideValidity) as raised:
+        cell.step("a", **quantities(cell, values))
+    assert str(raised.value) == f"{cell.name}: requires {validity.text} ({cell.source.citation})."
+
+
+@pytest.mark.parametrize("cell", ALGORITHMS, ids=ids(ALGORITHMS))
+def test_governing_equations_are_met(cell):
+    """What an algorithm gives for its example satisfies every equation it prints."""
+    given = cell.example()
+    got = cell(**given)
+    for equation in cell.equations:
+        residual = equation.residual(given, got)
+        assert math.isfinite(residual)
+        assert residual < 1e-8, equation.latex
+
+
+@pytest.mark.parametrize("name", ["peak_factor_from_table", "peak_factor_exact", "thermal_curve_duration"])
+def test_governing_equations_notice_a_wrong_result(name):
+    """A result off by a thousandth leaves a residual in at least one printed equation."""
+    cell = registry()[name]
+    given = cell.example()
+    wrong = cell(**given) * 1.001
+    assert max(equation.residual(given, wrong) for equation in cell.equations) > 1e-5
+
+
+@pytest.mark.parametrize("cell", registry().values(), ids=registry())
+def test_checks_named_behind_a_cell_exist(cell):
+    """Every check that a cell names is a file of the tests that mentions the cell, or its published values."""
+    for check in cell.checks:
+        path = ROOT / check.partition(":")[0]
+        assert path.exists(), check
+        if path.suffix == ".toml":
+            entries = tomllib.loads(path.read_text(encoding="utf-8"))["value"]
+            assert cell.name in {entry["cell"] for entry in entries}, check
+        elif isinstance(cell, Cell):
+            assert cell.name in path.read_text(encoding="utf-8"), check
+
+
+@pytest.mark.parametrize("cell", registry().values(), ids=registry())
+def test_a_cell_says_what_it_is(cell):
+    """Title, documentation and source are there, and the text stands alone."""
+    assert cell.title[0].isupper()
+    assert not cell.title.endswith(".")
+    assert cell.documentation.endswith(".")
+    assert cell.source.citation
+
+
+def test_the_library_is_not_empty():
+    """The tests above have something to run over."""
+    assert len(FORMULAS) >= 30
+    assert len(ALGORITHMS) >= 4
+    assert len(JOINT) >= 3
+
+
+def test_arrays_keep_their_shape():
+    """Algorithm cells over arrays return arrays of the same shape and floats for floats."""
+    for name, point in (("peak_factor_exact", 7.0), ("peak_factor_from_table", 7.0), ("thermal_curve_duration", 7.0)):
+        cell = registry()[name]
+        assert isinstance(cell(point), float)
+        assert cell(np.full((2, 3), point)) == pytest.approx(np.full((2, 3), cell(point)))
+
+
+def test_open_point_of_a_cell_is_text():
+    """A refusal can stand in an open point as it is."""
+    point = OpenPoint("a", "b: {got}", {"got": Quantity(1.0, "kA")})
+    assert point.text == "b: 1 kA"
