@@ -1,9 +1,9 @@
 """A made-up review in the form of the results file, for looking at pages and for tests. Every name is invented."""
 
 import numpy as np
+from tests.render.samples import AVERAGE, FACTOR
 
 import throughfault.cells  # noqa: F401 - declares the library
-from tests.render.samples import AVERAGE, FACTOR
 from throughfault.declare import Check, Fragment, Limit, Missing, OpenPoint, Outcome, registry
 from throughfault.quantities import Quantity
 from throughfault.render import parts, plots
@@ -134,7 +134,7 @@ def figures():
     return {
         "wave": plots.fault_wave(time, wave, offset=3.65 * 2**0.5 * decay, envelope=3.65 * 2**0.5 * (1 + decay), peak=(9.8, float(wave.max()))),
         "duty": plots.duty_by_case(CASES),
-        "temperature": plots.temperature_curve(seconds, {"HV": 105 + 21 * seconds, "LV": 105 + 89 * seconds}, {"HV": 250.0, "LV": 250.0}, 2.0),
+        "temperature": plots.temperature_curve({"HV": (seconds, 105 + 21 * seconds), "LV": (seconds, 105 + 89 * seconds)}, {"HV": 250.0, "LV": 250.0}, 2.0),
         "through": plots.through_fault_curve(
             [plots.Curve("thermal", multiple, 1250 / multiple**2), plots.Curve("mechanical", multiple[30:], 400 / multiple[30:] ** 2)],
             [plots.UnitPoint("HV, governing case", 8.0, 2.0)],

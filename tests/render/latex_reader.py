@@ -64,7 +64,7 @@ class Reader:
             value = value ** self.group()
         return value
 
-    def atom(self):
+    def atom(self):  # noqa: C901, PLR0911 - one branch for each thing a formula is made of
         self.skip()
         for letter, value in self.letters:
             rest = self.text[self.at + len(letter) :]
@@ -92,7 +92,7 @@ class Reader:
         for name, function in NAMED.items():
             if self.take(name):
                 return function(*self.bracket())
-        if self.take("e"):
+        if self.take(r"\mathrm{e}"):
             self.need("^")
             return math.exp(self.group())
         raise AssertionError(f"cannot read {self.text[self.at : self.at + 30]!r}")

@@ -65,7 +65,7 @@ def ratios(ratio: Annotated[float, R], length: Annotated[float, L]) -> Annotated
 
 def equal(first: Annotated[float, A], second: Annotated[float, B]) -> Annotated[float, Y]:
     """Greater or not."""
-    return first if first > second else second
+    return first if first > second else second  # noqa: FURB136 - a choice is wanted
 
 
 AVERAGE = made(average, valid_for=(

@@ -5,10 +5,10 @@ import random
 import re
 
 import pytest
-
-import throughfault.cells  # noqa: F401 - declares the library
 from tests.render.latex_reader import read, read_lines
 from tests.render.samples import AVERAGE, FACTOR, SAMPLES
+
+import throughfault.cells  # noqa: F401 - declares the library
 from throughfault.declare import Cell, Range, registry
 from throughfault.quantities import Quantity
 from throughfault.render.latex import formula_lines, worked_lines
@@ -53,7 +53,7 @@ def test_every_symbol_of_a_cell_is_printed_with_a_letter_of_its_own(name):
 @pytest.mark.parametrize("name", CELLS)
 def test_printed_formula_is_the_function(name):
     """What is printed is what is computed, at random points of the range."""
-    cell, rng = CELLS[name], random.Random(name)
+    cell, rng = CELLS[name], random.Random(name)  # noqa: S311 - repeatable points
     for _ in range(POINTS):
         values = draw(cell, rng)
         assert read_lines(formula_lines(cell), letters(cell, values)) == pytest.approx(cell.function(**values), rel=1e-11, abs=1e-12)
@@ -62,7 +62,7 @@ def test_printed_formula_is_the_function(name):
 @pytest.mark.parametrize("name", CELLS)
 def test_worked_line_states_the_numbers_of_the_run(name):
     """The numbers printed give the result printed, as far as five digits carry; it ends with the result."""
-    cell, rng = CELLS[name], random.Random(f"{name} worked")
+    cell, rng = CELLS[name], random.Random(f"{name} worked")  # noqa: S311 - repeatable points
     rounded = {n: float(f"{v:.3g}") for n, v in draw(cell, rng).items()}
     if cell.outside(rounded) is not None:
         rounded = draw(cell, rng)
@@ -84,7 +84,7 @@ def test_every_printed_line_can_be_set(name):
 @pytest.mark.parametrize("mutant", [("235", "253"), ("106000", "16000"), ("+ 235", "- 235"), ("- 1", "+ 1"), ("^{2}", "^{3}"), (r"2 \cdot", r"3 \cdot")])
 def test_a_swapped_digit_or_sign_is_caught(mutant):
     """The comparison has teeth: each single change of the printed formula is found."""
-    values = draw(AVERAGE, random.Random(1))
+    values = draw(AVERAGE, random.Random(1))  # noqa: S311 - repeatable points
     (line,) = formula_lines(AVERAGE)
     assert mutant[0] in line
     changed = line.replace(*mutant, 1)
@@ -98,7 +98,7 @@ def test_the_page_of_the_closed_form():
     ]
     assert formula_lines(FACTOR) == [
         r"\varphi = \arctan\left(X/R\right)",
-        r"k\sqrt{2} = \left(1 + e^{\frac{-\left(\varphi + \frac{\pi}{2}\right)}{X/R}} \cdot \sin\left(\varphi\right)\right) \cdot \sqrt{2}",
+        r"k\sqrt{2} = \left(1 + \mathrm{e}^{\frac{-\left(\varphi + \frac{\pi}{2}\right)}{X/R}} \cdot \sin\left(\varphi\right)\right) \cdot \sqrt{2}",
     ]
 
 
@@ -106,8 +106,8 @@ def test_worked_line_carries_units():
     """Numbers of the run stand with their units, a unit under a power in brackets."""
     step = AVERAGE.step("s", initial_temperature=Quantity(105, "degC"), current_density=Quantity(80, "A/mm^2"), duration=Quantity(2000, "ms"))
     assert worked_lines(step) == [
-        r"\theta_1 = 105\,\mathrm{°C} + \frac{2 \cdot \left(105\,\mathrm{°C} + 235\right)}"
-        r"{\frac{106000}{\left(80\,\mathrm{A/mm^{2}}\right)^{2} \cdot 2\,\mathrm{s}} - 1} = 198.39\,\mathrm{°C}"
+        (r"\theta_1 = 105\,\mathrm{°C} + \frac{2 \cdot \left(105\,\mathrm{°C} + 235\right)}"
+        r"{\frac{106000}{\left(80\,\mathrm{A/mm^{2}}\right)^{2} \cdot 2\,\mathrm{s}} - 1} = 198.39\,\mathrm{°C}")
     ]
 
 

@@ -15,7 +15,7 @@ import re
 import zlib
 from collections.abc import Iterable
 from importlib.metadata import version
-from importlib.resources import files
+from importlib.util import find_spec
 from io import BytesIO
 from pathlib import Path
 from tempfile import NamedTemporaryFile
@@ -23,6 +23,8 @@ from tempfile import NamedTemporaryFile
 from fontTools.subset import Options, Subsetter
 from fontTools.ttLib import TTFont
 from platformdirs import user_cache_path
+
+from throughfault.errors import DeclarationError
 
 __all__ = ["FAMILY", "code_points", "font_face", "subset"]
 
@@ -40,7 +42,10 @@ _SPECIAL = {
 
 
 def _font_bytes() -> bytes:
-    return files("ziamath").joinpath("fonts", "STIXTwoMath-Regular.ttf").read_bytes()
+    found = find_spec("ziamath")  # found, not imported: only its font is wanted
+    if found is None or not found.submodule_search_locations:
+        raise DeclarationError("the package 'ziamath', which carries the mathematical font, is not installed.")
+    return Path(found.submodule_search_locations[0], "fonts", "STIXTwoMath-Regular.ttf").read_bytes()
 
 
 def _slanted(letter: str) -> int | None:

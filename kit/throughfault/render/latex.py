@@ -100,7 +100,7 @@ class _Printer:
             case "sqrt":
                 return _Printed(rf"\sqrt{{{arguments[0]}}}", ATOM)
             case "exp":
-                return _Printed(f"e^{{{arguments[0]}}}", POWER)
+                return _Printed(rf"\mathrm{{e}}^{{{arguments[0]}}}", POWER)  # upright: a letter e may be a symbol
             case "abs":
                 return _Printed(rf"\left|{arguments[0]}\right|", ATOM)
             case "hypot":

@@ -40,12 +40,8 @@ class _Notes(mistune.HTMLRenderer):
 
 @cache
 def _reader() -> mistune.Markdown:
-    renderer = _Notes()
-    reader = mistune.Markdown(renderer=renderer, plugins=[table, math])
-    # The plugin brings renderers of its own that leave the formula to a script; ours are kept.
-    renderer.register("inline_math", _Notes.inline_math)
-    renderer.register("block_math", _Notes.block_math)
-    return reader
+    # A renderer's own methods go before those a plugin brings, which leave the formula to a script.
+    return mistune.Markdown(renderer=_Notes(), plugins=[table, math])
 
 
 def note_html(source: str) -> str:

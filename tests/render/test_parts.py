@@ -1,0 +1,157 @@
+"""The sections of a record show every number as data that the results file holds."""
+
+import pytest
+from tests.render import demo
+
+from throughfault.render import parts
+from throughfault.render.numbers import full_value
+from throughfault.render.record import data_ids, lint, loose_digits
+from throughfault.workbook.results import lookup
+
+PARTS = demo.html()
+
+
+@pytest.mark.parametrize("name", PARTS)
+def test_no_loose_digit(name):
+    """Digits stand in data, formulas, names, citations and versions only."""
+    assert loose_digits(PARTS[name]) == []
+
+
+@pytest.mark.parametrize("name", PARTS)
+def test_every_data_is_in_the_results_file(name):
+    """Id and full value agree."""
+    for id_, value in data_ids(PARTS[name]):
+        assert full_value(lookup(demo.RESULTS, id_)) == value, id_
+
+
+@pytest.mark.parametrize("name", PARTS)
+def test_a_part_is_clean(name):
+    """Nothing on it could load, run or restyle."""
+    assert [fault for fault in lint(PARTS[name]) if fault.startswith("line")] == []
+
+
+def leaves(node, path=()):
+    """Every value of the unit file by its path."""
+    if isinstance(node, dict):
+        return {k2: v2 for k, v in node.items() for k2, v2 in leaves(v, (*path, k)).items()}
+    if isinstance(node, list):
+        return {k2: v2 for k, v in enumerate(node) for k2, v2 in leaves(v, (*path, str(k))).items()}
+    return {"/".join(("inputs", *path)): full_value(node)}
+
+
+@pytest.mark.parametrize("inputs", [demo.INPUTS, {
+    "windings": {"HV": {"rated_power": "1 MVA"}},
+    "design": {
+        "core": {"limbs": 3},
+        "coils": [
+            {"name": f"C{n}", "blocks": [{"bottom": "90 mm", "turns": {"plus": 20, "minus": -40}}], "conductor": {"bonded": False}}
+            for n in range(8)
+        ],
+    },
+    "impedances": [{"impedance": "1 %"}],
+    "empty": {},
+}])  # fmt: skip
+def test_every_key_of_the_unit_file_is_shown(inputs):
+    """Nothing that was given is left out, whatever its nesting."""
+    assert dict(data_ids(parts.unit_data_part(inputs, {}))) == leaves(inputs)
+
+
+def test_defaults_are_named():
+    """Each default in force stands with its key."""
+    assert ("defaults/windings.HV.eddy_share", "0") in data_ids(PARTS["unit_data"])
+    assert "No default was needed." in parts.unit_data_part({}, {})
+
+
+def test_every_case_is_shown():
+    """R.m.s. and peak of every phase of every winding and terminal."""
+    ids = {id_ for id_, _ in data_ids(PARTS["duty"])}
+    for case in demo.CASES:
+        for kind in ("currents", "terminals"):
+            for name, phases in case[kind].items():
+                assert {f"cases/{case['id']}/{kind}/{name}/{p}/{m}" for p in phases for m in ("rms", "peak")} <= ids
+
+
+def test_every_quantity_of_a_part_is_shown():
+    """Results of any name find a place."""
+    for name, fragment in (("duty", demo.DUTY), ("thermal", demo.THERMAL), ("requirement", demo.REQUIREMENT)):
+        ids = {id_ for id_, _ in data_ids(PARTS[name])}
+        for quantity in fragment.quantities:
+            assert quantity.id in ids or quantity.value is None
+
+
+def test_tapping_table_picks_the_largest():
+    """Governing current by tapping, by its place among the cases."""
+    largest = max(demo.CASES, key=lambda case: case["currents"]["LV"]["a"]["peak"])
+    assert f"cases/{largest['id']}/currents/LV/a/peak" in {i for i, _ in data_ids(PARTS["duty"])}
+
+
+def test_a_result_not_assessed_gives_its_reason():
+    """The reason is printed where the number would stand."""
+    assert "outside the range X/R 1 to 14" in PARTS["duty"]
+
+
+def test_a_single_phase_unit_and_absent_currents():
+    """One phase, a winding without current in a case, a part without cases."""
+    case = {
+        "id": "principal/LV/LL/HV", "tapping": "principal", "fault": "LL", "at": "LV", "required_by_standard": True,
+        "currents": {"HV": {"a": {"rms": 1.0, "peak": None}}, "LV": {"a": {}}}, "terminals": {},
+    }
+    entry = {"quantities": {}, "cases": [case], "checks": []}
+    shown = parts.duty_part(entry)
+    assert {i for i, _ in data_ids(shown)} == {"cases/principal/LV/LL/HV/currents/HV/a/rms"}
+    assert data_ids(parts.duty_part({"quantities": {}, "cases": [], "checks": []})) == []
+
+
+def test_thermal_part_shows_points_to_note():
+    """Open points of the part stand in it."""
+    entry = {**demo.THERMAL.entry(), "open_points": demo.RESULTS["open_points"][:1]}
+    assert ("open_points/duty.peak_exact/more", "1.27") in data_ids(parts.thermal_part(entry))
+
+
+def test_verdict_is_said_in_words_with_its_reason():
+    """Each ability has a sentence on what its verdict rests on."""
+    check = demo.RESULTS["checks"]
+    alone = {"thermal": "withstands", "dynamic": "not assessed", "overall": "not assessed"}
+    shown = parts.verdict_part(alone, check[:1], (), "none complete")
+    assert "every check that applies is within its limit" in shown
+    assert "no check applies" in shown
+    assert "No limit unconfirmed" in shown
+    one = parts.verdict_part(alone, [check[3]], (), "none complete")
+    assert "a check that applies is not assessed" in one
+    two = parts.verdict_part(alone, [check[3], check[3] | {"id": "b"}], ("a", "b"), "none complete")
+    assert "several checks that apply are not assessed" in two
+    assert "limits unconfirmed</strong>" in two
+    assert "several checks exceed their limits" in parts.verdict_part(alone, check, (), "none complete")
+
+
+def test_first_page_lists_what_bars_approval_first():
+    """Blocking points lead; limits already listed as unconfirmed are not said twice."""
+    shown = PARTS["summary"]
+    assert shown.index("category") < shown.index("duty.peak_exact")
+    assert "limit.thermal.LV.temperature" not in shown
+    assert "limit.thermal.LV.temperature" in PARTS["open_point"]
+
+
+def test_cautions():
+    """The margins of the force models are stated once forces are computed."""
+    assert "carry margins" not in parts.cautions()
+    assert "carry margins" in parts.cautions(forces=True)
+    for told in ("withstand only", "re-energise", "maker&#39;s responsibility", "licensed practice", "live workbook"):
+        assert told in parts.cautions()
+
+
+def test_signatures_and_how_to_verify():
+    """Each role has a line; the commands need nothing of the kit but the last two."""
+    shown = PARTS["signature"]
+    for told in ("Author", "Checker", "Approver", "Witness", "sha256sum -c SHA256SUMS", "ssh-keygen -Y verify", "throughfault verify BV-T1-A", "throughfault reproduce BV-T1-A"):
+        assert told in shown
+
+
+def test_hostile_names_are_inert():
+    """Markup in any text of the unit file stays text in every part."""
+    bad = "<img src=x onerror=alert(1)>"
+    inputs = {bad: bad, "identity": {"purchaser": bad}, "windings": {bad: {bad: bad}}, "list": [{"name": bad, "between": [bad, bad]}]}
+    unit = {"tag": bad, "title": bad, "revision": bad}
+    results = {**demo.RESULTS, "unit": unit, "inputs": inputs, "standard": bad}
+    shown = parts.summary_part(results, [bad]) + parts.unit_data_part(inputs, {bad: bad}) + parts.signature_part(bad, bad)
+    assert "<img" not in shown
