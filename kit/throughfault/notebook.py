@@ -56,6 +56,10 @@ class Shown:
         if results:
             self._bundle[MIME] = dict(results)
 
+    def __repr__(self) -> str:
+        """Be the same in every run: a notebook keeps it beside the HTML."""
+        return "<part of a review>"
+
     def _repr_mimebundle_(self, **_: Any) -> dict[str, Any]:
         return self._bundle
 
@@ -205,7 +209,7 @@ def calculation(book: Workbook, name: str) -> Shown:
         raise InputError(f"calculation: must name a cell of the library, got '{name}'{did_you_mean(name, known)}.")
     made = known[name]
     if isinstance(made, Algorithm):
-        return Shown(section(made.title, algorithm_block(made), id=f"cell-{name}"), {})
+        return Shown(section(made.title, algorithm_block(made, anchor="calculation"), id=f"library-{name}"), {})
     steps = book.review.steps(name)
-    content = Markup("").join(formula_block(step) for step in steps) or Markup("<p>No step of this review uses it.</p>")
-    return Shown(section(made.title, content, id=f"cell-{name}"), book.emit(Fragment(steps=steps)))
+    content = Markup("").join(formula_block(step, anchor="calculation") for step in steps) or Markup("<p>No step of this review uses it.</p>")
+    return Shown(section(made.title, content, id=f"library-{name}"), book.emit(Fragment(steps=steps)))

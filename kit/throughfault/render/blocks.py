@@ -19,8 +19,10 @@ from throughfault.render.html import (
     data,
     items,
     joined,
+    label,
     prose,
     quantity,
+    sentence,
     slug,
     table,
 )
@@ -44,7 +46,7 @@ def _arguments(step: Step) -> Markup:
     rows = [
         [
             mathml(step.cell.symbol(name).latex),
-            prose(step.cell.symbol(name).description),
+            label(step.cell.symbol(name).description),
             quantity(f"steps/{step.id}/arguments/{name}", q.value, q.unit),
         ]
         for name, q in step.arguments.items()
@@ -52,32 +54,35 @@ def _arguments(step: Step) -> Markup:
     return table("Where", ["Symbol", "Quantity", Column("Value", numeric=True)], rows, "where")
 
 
-def formula_block(step: Step, heading: Text | None = None) -> Markup:
-    """Show a step: title, citation, formula, the same with the run's numbers, arguments and result."""
+def formula_block(step: Step, heading: Text | None = None, anchor: str = "step") -> Markup:
+    """Show a step: title, citation, formula, the same with the run's numbers, arguments and result.
+
+    A step shown a second time on a page takes another `anchor`.
+    """
     cell = step.cell
     result = quantity(f"steps/{step.id}/result", step.result.value, step.result.unit)
     return Markup(
-        '<section class="formula" aria-labelledby="step-{id}"><h4 id="step-{id}">{title}</h4>'
-        '<p class="source">{source}</p>{formula}{worked}{where}'
+        '<section class="formula" aria-labelledby="{id}"><h4 id="{id}">{title}</h4>'
+        '<p class="source">{source}</p><div class="work"><div>{formula}{worked}</div>{where}</div>'
         '<p class="result">{description}: {symbol} = {result}</p></section>\n'
     ).format(
-        id=slug(step.id), title=prose(cell.title) if heading is None else heading,
+        id=f"{anchor}-{slug(step.id)}", title=label(cell.title) if heading is None else heading,
         source=clause(cell.source.citation, cell.source.provenance),
         formula=_lines(formula_lines(cell), "equation"), worked=_lines(worked_lines(step), "equation worked"),
-        where=_arguments(step), description=prose(cell.result.description.capitalize()),
+        where=_arguments(step), description=label(sentence(cell.result.description)),
         symbol=mathml(cell.result.latex), result=result,
     )  # fmt: skip
 
 
-def algorithm_block(algorithm: Algorithm, content: Text = "") -> Markup:
+def algorithm_block(algorithm: Algorithm, content: Text = "", anchor: str = "cell") -> Markup:
     """Show the governing equations of a solver, where it holds, and what it gave."""
     holds = Markup('<span class="clause">{}</span>')
     validity = items((holds.format(text) for text in algorithm.valid_for), "validity")
     return Markup(
-        '<section class="formula" aria-labelledby="cell-{id}"><h4 id="cell-{id}">{title}</h4>'
+        '<section class="formula" aria-labelledby="{id}"><h4 id="{id}">{title}</h4>'
         '<p class="source">{source}</p>{equations}<p>Holds for:</p>{validity}{content}</section>\n'
     ).format(
-        id=slug(algorithm.name), title=prose(algorithm.title),
+        id=f"{anchor}-{slug(algorithm.name)}", title=label(algorithm.title),
         source=clause(algorithm.source.citation, algorithm.source.provenance),
         equations=_lines((e.latex for e in algorithm.equations), "equation"), validity=validity, content=content,
     )  # fmt: skip

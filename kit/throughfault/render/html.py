@@ -29,10 +29,12 @@ __all__ = [
     "identity",
     "items",
     "joined",
+    "label",
     "note",
     "prose",
     "quantity",
     "section",
+    "sentence",
     "slug",
     "source_text",
     "table",
@@ -104,6 +106,11 @@ def prose(text: str) -> Markup:
     return joined([*parts, text[at:]])
 
 
+def label(text: str) -> Markup:
+    """Escape the name of a quantity; one that holds a digit is a name throughout (resistivity at 20 degC)."""
+    return identity(text) if any(letter.isdecimal() for letter in text) else prose(text)
+
+
 def note(text: Text, kind: str = "note") -> Markup:
     """Set a remark apart."""
     return Markup('<p class="{}">{}</p>').format(kind, text)
@@ -118,6 +125,11 @@ def definitions(pairs: Iterable[tuple[Text, Text]]) -> Markup:
     """List terms with what they are."""
     rows = (Markup("<div><dt>{}</dt><dd>{}</dd></div>").format(term, given) for term, given in pairs)
     return Markup('<dl class="facts">{}</dl>').format(joined(rows))
+
+
+def sentence(text: str) -> str:
+    """Begin with a capital and leave the rest: names such as LV stay as they are."""
+    return text[:1].upper() + text[1:]
 
 
 def slug(text: str) -> str:

@@ -16,7 +16,7 @@ __all__ = ["FORMAT", "MIME", "emitted_fragments", "lookup", "merge_fragments", "
 FORMAT = "throughfault-results/1"
 MIME = "application/vnd.throughfault.results+json"
 LISTS = ("steps", "checks", "cases", "missing", "open_points")
-SINGLE = ("verdicts", "route", "unit", "standard", "inputs")
+SINGLE = ("verdicts", "route", "unit", "standard", "inputs", "defaults", "unconfirmed")
 
 
 def emitted_fragments(notebook: nbformat.NotebookNode) -> list[dict[str, Any]]:

@@ -120,7 +120,8 @@ def _execute(staging: Path, template: Template, *, progress: bool) -> nbformat.N
             )  # fmt: skip
     except PapermillExecutionError as fault:
         tail = "\n".join(str(fault.evalue).splitlines()[-SHOWN_TRACEBACK:])
-        raise RunError(f"{template.name}: cell {fault.exec_count} failed: {fault.ename}: {tail}") from fault
+        call = str(fault.source).strip().splitlines()[-1]
+        raise RunError(f"{template.name}: the cell '{call}' failed: {fault.ename}: {tail}") from fault
     except DeadKernelError as fault:
         raise RunError(f"{template.name}: the kernel died while the workbook ran; nothing was written.") from fault
     finally:

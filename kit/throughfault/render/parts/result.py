@@ -17,7 +17,9 @@ from throughfault.render.html import (
     data,
     identity,
     joined,
+    label,
     quantity,
+    sentence,
     table,
 )
 from throughfault.render.mathml import mathml
@@ -26,6 +28,7 @@ from throughfault.render.numbers import column_text, unit_text
 __all__ = ["case_name", "numbers", "origins", "reasons", "result_list", "result_matrix", "words"]
 
 Entry = Mapping[str, Any]
+WIDEST = 4  # measures beside each other that fit on A4
 
 
 def words(term: str) -> str:
@@ -54,7 +57,7 @@ def _head(measure: str, entries: Iterable[Entry]) -> Column:
     symbols = {entry["symbol"] for entry in entries}
     symbol = mathml(symbols.pop()) if len(symbols) == 1 and "" not in symbols else ""
     unit = unit_text(units.pop())
-    parts: list[Text] = [words(measure).capitalize(), *([symbol] if symbol else []), *([unit] if unit else [])]
+    parts: list[Text] = [label(sentence(words(measure))), *([symbol] if symbol else []), *([unit] if unit else [])]
     return Column(joined(parts, Markup("<br>")), numeric=True)
 
 
@@ -67,7 +70,8 @@ def result_matrix(
 ) -> Markup:
     """Set results in a table; `place` gives (subject, measure) of an id, or None where it does not belong here.
 
-    With `governing`, the case that governs that measure closes each row.
+    With `governing`, the case that governs that measure closes the row (or the column) of each subject. Many
+    measures stand one below the other, so that the table never grows wider than the page.
     """
     cells = {place(id_): (id_, entry) for id_, entry in quantities.items()}
     cells.pop(None, None)
@@ -75,6 +79,8 @@ def result_matrix(
         return Markup("")
     subjects = list(dict.fromkeys(key[0] for key in cells if key))
     measures = list(dict.fromkeys(key[1] for key in cells if key))
+    if len(measures) > WIDEST:
+        return _upright(caption, subjects, measures, cells, governing)
     columns: list[Column | str] = [subject]
     shown: list[list[Text]] = [[identity(name)] for name in subjects]
     for measure in measures:
@@ -90,6 +96,28 @@ def result_matrix(
             pair = cells.get((name, governing))
             row.append(case_name(pair[1]["governing_case"] if pair else None))
     return table(caption, columns, shown, "results")
+
+
+def _upright(
+    caption: Text,
+    subjects: Sequence[str],
+    measures: Sequence[str],
+    cells: Mapping[tuple[str, str] | None, tuple[str, Entry]],
+    governing: str | None,
+) -> Markup:
+    """Set one row a measure, one column a subject."""
+    rows: list[list[Text]] = []
+    for measure in measures:
+        held = [cells.get((name, measure)) for name in subjects]
+        entry = next(pair[1] for pair in held if pair)
+        symbol = mathml(entry["symbol"]) if entry["symbol"] else ""
+        shown = (quantity(pair[0], pair[1]["value"], pair[1]["unit"]) if pair else "" for pair in held)
+        rows.append([label(sentence(words(measure))), symbol, *shown])
+    if governing:
+        pairs = (cells.get((name, governing)) for name in subjects)
+        rows.append(["Governing case", "", *(case_name(pair[1]["governing_case"] if pair else None) for pair in pairs)])
+    columns: list[Column | str] = ["Quantity", "Symbol", *(Column(identity(name), numeric=True) for name in subjects)]
+    return table(caption, columns, rows, "results")
 
 
 def result_list(caption: Text, quantities: Mapping[str, Entry]) -> Markup:
@@ -111,7 +139,7 @@ def result_list(caption: Text, quantities: Mapping[str, Entry]) -> Markup:
 def origins(quantities: Mapping[str, Entry]) -> Markup:
     """Tell from which cells and sources the results come."""
     given = (entry for entry in quantities.values() if entry["value"] is not None)
-    found = dict.fromkeys((entry["cell"], entry["source"], entry["provenance"]) for entry in given)
+    found = dict.fromkeys((e["cell"], e["source"], e["provenance"]) for e in given if e["cell"])
     if not found:
         return Markup("")
     told = joined((Markup("{}, {}").format(code(cell), clause(source, known)) for cell, source, known in found), "; ")
