@@ -73,7 +73,7 @@ heating_ratio = Symbol(
     "heating_ratio", "m", "1", "heat put in at the starting loss over heat that doubles the resistance"
 )
 relative_rise = Symbol("relative_rise", "r", "1", "rise over the temperature at the start above zero resistance")
-resistivity_20 = Symbol("resistivity_20", r"\rho_{20}", "uohm m", "resistivity at 20 degC")
+resistivity_20 = Symbol("resistivity_20", r"\rho_{20}", "uohm m", "resistivity at the temperature of the index")
 density = Symbol("density", r"\gamma", "kg/m^3", "density of the conductor")
 cooling_time_constant = Symbol("cooling_time_constant", r"\tau_w", "s", "time constant of winding to liquid")
 dead_time = Symbol("dead_time", r"\Delta t", "s", "time without current between two faults")
