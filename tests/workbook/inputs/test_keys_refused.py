@@ -306,6 +306,12 @@ CASES = {
             'unit.toml: [line 50] impedances[1].between: must be the names of two windings such as ["HV", "LV"], got an array; source: routine test report or rating plate.'
         ],
     ),
+    "a name in a row that is none": (
+        [('between = ["HV", "LV"]', 'between = ["HV", "L\\u0080V"]')],
+        [
+            'unit.toml: [line 50] impedances[1].between: must be the names of two windings such as ["HV", "LV"], got \'L\\x80V\'; source: routine test report or rating plate.'
+        ],
+    ),
     "the same winding twice in a row": (
         [('between = ["HV", "LV"]', 'between = ["HV", "HV"]')],
         [

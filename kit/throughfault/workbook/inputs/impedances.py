@@ -25,8 +25,11 @@ class TwoNames(Leaf):
         """Read an array of two different names."""
         if not isinstance(value, list) or len(value) != 2 or not all(isinstance(n, str) for n in value):
             raise self.refuse(value)
+        for name in value:
+            if not NAME.fullmatch(name):
+                raise self.refuse(name)
         if value[0] == value[1]:
-            raise self.refuse(f"{value[0]}, {value[1]}"[:64])
+            raise self.refuse(f"{value[0]}, {value[1]}")
         return value[0], value[1]
 
     def schema(self) -> dict[str, Any]:
