@@ -68,9 +68,15 @@ def equal(first: Annotated[float, A], second: Annotated[float, B]) -> Annotated[
     return first if first > second else second  # noqa: FURB136 - a choice is wanted
 
 
+def signs(first: Annotated[float, A], second: Annotated[float, B]) -> Annotated[float, Y]:
+    """Products that begin with a sign."""
+    a, b = first, second
+    return -2 * a / b - (-a) * b
+
+
 AVERAGE = made(average, valid_for=(
     Range("duration", above=0.0, at_most=10.0),
     Condition("J^2 t below 106000", lambda current_density, duration, **_: current_density**2 * duration < 106000),
 ))
 FACTOR = made(factor, {"phi": PHI})
-SAMPLES = {c.name: c for c in (AVERAGE, FACTOR, made(brackets), made(functions), made(branches), made(ratios), made(equal))}
+SAMPLES = {c.name: c for c in (AVERAGE, FACTOR, made(brackets), made(functions), made(branches), made(ratios), made(equal), made(signs))}

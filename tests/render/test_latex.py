@@ -124,3 +124,9 @@ def test_negative_numbers_stand_in_brackets():
     step = SAMPLES["brackets"].step("s", first=Quantity(-2, "1"), second=Quantity(3, "1"))
     assert r"\left(-2\right)^{3}" in worked_lines(step)[0]
     assert r"2.5 \times 10^{-7}" in formula_lines(SAMPLES["brackets"])[0]
+
+
+def test_a_leading_sign_needs_no_bracket():
+    """The sign of a first factor stands before the product; the product is bracketed where it must be."""
+    line = formula_lines(SAMPLES["signs"])[0]
+    assert line == r"y = \frac{-2 \cdot a}{b} - \left(-a \cdot b\right)"

@@ -155,3 +155,23 @@ def test_hostile_names_are_inert():
     results = {**demo.RESULTS, "unit": unit, "inputs": inputs, "standard": bad}
     shown = parts.summary_part(results, [bad]) + parts.unit_data_part(inputs, {bad: bad}) + parts.signature_part(bad, bad)
     assert "<img" not in shown
+
+
+def test_many_measures_stand_below_each_other():
+    """A table of many quantities turns upright, so that it never grows wider than the page; nothing is lost."""
+    measures = ("density", "temperature", "permissible_duration", "multiple", "offset_2", "duration")
+    made = {
+        f"thermal.{w}.{m}": demo.outcome(f"thermal.{w}.{m}", 1.5, "s", "" if m == "multiple" else "t")
+        for w in ("HV", "LV") for m in measures if (w, m) != ("LV", "multiple")
+    }  # fmt: skip
+    quantities = demo.Fragment(quantities=tuple(made.values())).entry()["quantities"]
+    shown = parts.thermal_part({"quantities": quantities, "checks": [], "open_points": []})
+    assert {id_ for id_, _ in data_ids(shown)} == set(made)
+    assert '<th scope="col">Quantity</th><th scope="col">Symbol</th><th scope="col" class="number">' in shown
+    assert '<th scope="row">Governing case</th>' in shown
+    assert loose_digits(shown) == []
+
+
+def test_a_value_that_is_no_table_is_shown():
+    """A list of plain values at the top of the file has its own block."""
+    assert data_ids(parts.unit_data_part({"notes": ["one", "two"]}, {})) == [("inputs/notes/0", "one"), ("inputs/notes/1", "two")]

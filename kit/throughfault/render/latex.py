@@ -91,6 +91,8 @@ class _Printer:
                 return _Printed(rf"\frac{{{left.text}}}{{{right.text}}}", POWER)
             case "**":
                 return _Printed(f"{left.within(ATOM)}^{{{right.text}}}", POWER)
+            case "*" if isinstance(node.left, Negative):  # a leading sign needs no bracket of its own
+                return _Printed(rf"{left.text} \cdot {right.within(POWER)}", SUM)
             case "*":
                 return _Printed(rf"{left.within(PRODUCT)} \cdot {right.within(POWER)}", PRODUCT)
         return _Printed(f"{left.within(SUM)} {node.sign} {right.within(PRODUCT)}", SUM)
