@@ -49,7 +49,8 @@ class Solved:
             "terminal": self.solution.terminal_current,
             "neutral": self.solution.neutral_current[:, :, None],
         }[kind] / 1000.0
-        scale = np.abs(self.solution.winding_current).max(axis=(1, 2), initial=0.0) / 1000.0
+        fault = np.abs(self.solution.fault_current).max(axis=1, initial=0.0)
+        scale = np.maximum(fault, np.abs(self.solution.winding_current).max(axis=(1, 2), initial=0.0)) / 1000.0
         return np.where(np.abs(raw) > ROUNDING * scale[:, None, None], raw, 0.0)
 
 
