@@ -131,7 +131,7 @@ def test_exponential_form_above_its_ratio():
     assert thermal.windings["HV"].check.verdict == "exceeds"
     high = assessed(
         IEEE,
-        ("[windings.HV]", '[limits]\n"thermal.HV.temperature" = { value = "400 degC", source = "own" }\n[windings.HV]'),
+        ("[windings.HV]", '[limits]\n"thermal.HV.temperature" = { value = "450 degC", source = "own" }\n[windings.HV]'),
     )
     ratio = [s.cell.name for s in high.fragment.steps if s.id == "thermal.HV.permissible_duration.heating_ratio"]
     assert ratio == ["permitted_heating_ratio_exponential"]
