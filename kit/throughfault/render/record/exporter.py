@@ -10,7 +10,7 @@ from typing import Any, ClassVar
 from jupyter_core.paths import ENV_JUPYTER_PATH, SYSTEM_JUPYTER_PATH
 from markupsafe import Markup
 from nbconvert.exporters import TemplateExporter
-from nbformat import NotebookNode
+from nbformat import NotebookNode, from_dict
 from traitlets import default
 from traitlets.config import Config
 
@@ -23,6 +23,7 @@ from throughfault.render.record.style import style_sheet
 
 __all__ = ["RecordExporter", "export_record"]
 
+SHOWN = ("text/html", "text/markdown", "text/plain")
 _HEADING = re.compile(r"<h([23])((?: [^>]*)?)>(.*?)</h\1>", re.DOTALL)
 _ID = re.compile(r' id="([^"]*)"')
 _TAGS = re.compile(r"<[^>]*>")
@@ -50,8 +51,7 @@ class RecordExporter(TemplateExporter):  # type: ignore[misc]  # the library is 
 
     def __init__(self) -> None:
         folder = str(files("throughfault.render.record").joinpath("template"))
-        priority = ["text/html", "text/markdown", "text/plain"]
-        config = Config({"NbConvertBase": {"display_data_priority": priority}})
+        config = Config({"NbConvertBase": {"display_data_priority": list(SHOWN)}})
         super().__init__(config=config, template_name="review_record", extra_template_basedirs=[folder])
         for name, function in self.template_filters.items():
             self.register_filter(name, function)
@@ -109,6 +109,19 @@ def _contents(headings: list[tuple[int, str, str]]) -> str:
     return f'<nav class="contents" aria-label="Contents"><p class="title">Contents</p><ol>\n{rows}</ol></nav>'
 
 
+def _shown(notebook: NotebookNode) -> NotebookNode:
+    """Return the notebook without the data that a page does not show; the library copies it twice."""
+    cells = []
+    for cell in notebook["cells"]:
+        outputs = [
+            {**o, "data": {kind: o["data"][kind] for kind in SHOWN if kind in o["data"]}} if "data" in o else o
+            for o in cell.get("outputs", ())
+        ]
+        cells.append({**cell, "outputs": outputs} if outputs else dict(cell))
+    made: NotebookNode = from_dict({**notebook, "cells": cells})
+    return made
+
+
 def export_record(notebook: NotebookNode, results: Mapping[str, Any]) -> str:
     """Make the record's page of an executed notebook; the results name the unit.
 
@@ -119,16 +132,16 @@ def export_record(notebook: NotebookNode, results: Mapping[str, Any]) -> str:
     RunError
         If a cell ended in an error, or the page fails its last inspection.
     """
-    body, _ = RecordExporter().from_notebook_node(notebook)
+    body, _ = RecordExporter().from_notebook_node(_shown(notebook))
     body, headings = _numbered(body)
     contents = _contents(headings)
     body = _PLACE.sub(lambda _: contents, body, count=1) if _PLACE.search(body) else contents + body
     unit = results["unit"]
     style = style_sheet(body, unit["tag"], unit["revision"])
-    page = _PAGE.format(
+    page = str(_PAGE.format(
         policy=Markup(POLICY.format(style_hash(style))), style=Markup(style), body=Markup(body),  # noqa: S704 - sanitised
         tag=unit["tag"], revision=unit["revision"], title=unit["title"],
-    )  # fmt: skip
+    ))  # fmt: skip
     if faults := lint(page):
         raise RunError("the record is not clean: " + " ".join(faults))
-    return str(page)
+    return page
