@@ -230,3 +230,12 @@ def test_minimum_impedance_is_for_two_separate_windings():
     found = values(assess_requirement(unit, rules, assess_duty(unit, rules)))
     assert found["requirement.minimum_impedance"] == 12.5
     assert not [name for name in found if name.endswith("-LV.impedance")]
+
+
+def test_ieee_multiples_need_the_self_cooled_power():
+    """Without it they refer to the rated power, which is said; under IEC nothing is."""
+    text = "Multiples of the current refer to the rated power: rating.self_cooled_power is not given."
+    assert points(assessed(IEEE))["requirement.base_power"] == text
+    cooled = ("fault_duration", 'self_cooled_power = "400 kVA"\nfault_duration')
+    assert "requirement.base_power" not in points(assessed(IEEE, cooled))
+    assert "requirement.base_power" not in points(assessed())

@@ -61,6 +61,7 @@ def assess_requirement(unit: Unit, rules: RuleSet, duty: DutyLike) -> Requiremen
     _impedances(unit, rules, found)
     _tolerances(unit, found)
     systems = tuple(system_used(unit, rules, name, category, found) for name in unit.system.terminals)
+    _base(unit, rules, found)
     _durations(unit, rules, duty, category, found)
     faults = _faults(duty, found)
     fragment = Fragment(
@@ -126,6 +127,13 @@ def _tolerances(unit: Unit, found: Lines) -> None:
         values = {"tolerance": Quantity(tolerance, "%")}
         point = f"requirement.{pair}.{row.tapping}.tolerance"
         found.points.append(OpenPoint(point, text, values, rows.source.citation))
+
+
+def _base(unit: Unit, rules: RuleSet, found: Lines) -> None:
+    """Point out that multiples refer to the rated power where the self-cooled one is asked and not given."""
+    if rules.base_power_is_self_cooled and unit.rating.self_cooled_power is None:
+        text = "Multiples of the current refer to the rated power: rating.self_cooled_power is not given."
+        found.points.append(OpenPoint("requirement.base_power", text, clause="IEEEC57.12.00-2015, 7.1.5"))
 
 
 def _durations(unit: Unit, rules: RuleSet, duty: DutyLike, category: Category, found: Lines) -> None:

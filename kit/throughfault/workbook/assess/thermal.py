@@ -199,25 +199,28 @@ def _assessed(
     again, shots = reclosing(given, density)
     shown = {k: (LABELS[k], Outcome.of_step(s[-1], governing_case=given.case)) for k, s in beside.items()}
     check, missing = _check(temperature, limit, given.case)
-    worked = [Outcome.of_step(step, governing_case=given.case) for step in (density, *again[-1:])]
-    quantities = (*common.outcomes, *_multiple_outcome(common, steps), worked[0], temperature, allowed)
-    quantities = (*quantities, *(outcome for _, outcome in shown.values()), *worked[1:])
+    first, *last = (Outcome.of_step(step, governing_case=given.case) for step in (density, *again[-1:]))
+    results = (first, temperature, allowed, *(outcome for _, outcome in shown.values()), *last)
+    quantities = (*common.outcomes, *_multiple_outcome(common, steps), *results)
     every = (*steps, density, *found, *more, *(step for s in beside.values() for step in s), *again)
-    fragment = Fragment(quantities, every, (check,), missing=missing, open_points=_points(given, check, shown))
-    until = BEYOND * max(given.duration.to("s"), allowed.value or 0.0)
-    constant = beside["offset"][0].result.value if "offset" in beside else None
     return _made(
-        common,
-        limit.limit,
-        check,
+        common, limit.limit, check,
         density=density.result.value,
         temperature=temperature.value,
         permissible_duration=allowed.value,
         comparisons=shown,
-        curve=curve_of(given, density.result.value, common.method, until, constant),
+        curve=_curve(given, density, common.method, allowed, beside),
         shots=shots,
-        fragment=fragment,
-    )
+        fragment=Fragment(quantities, every, (check,), missing=missing, open_points=_points(given, check, shown)),
+    )  # fmt: skip
+
+
+def _curve(
+    given: HeatInputs, density: Step, method: str, allowed: Outcome, beside: dict[str, tuple[Step, ...]]
+) -> dict[str, Floats]:
+    until = BEYOND * max(given.duration.to("s"), allowed.value or 0.0)
+    constant = beside["offset"][0].result.value if "offset" in beside else None
+    return curve_of(given, density.result.value, method, until, constant)
 
 
 def _deciding(common: _Common, given: HeatInputs, density: Step) -> tuple[Outcome, tuple[Step, ...]]:

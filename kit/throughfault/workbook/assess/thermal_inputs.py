@@ -105,26 +105,13 @@ def x_over_r_of(duty: DutyLike, case: str | None) -> float | None:
 
 def heat_inputs(unit: Unit, rules: RuleSet, winding: str, duties: DutyLike, duration: Tabled) -> HeatInputs | Missing:
     """Settle the inputs of a winding, or name every key that is missing."""
+    duty, own = duties.windings[winding], unit.windings[winding]
     start, material, section = (
-        start_of(unit, rules, winding),
-        material_of(unit, winding),
-        conductor_section(unit, winding),
-    )
-    duty = duties.windings[winding]
+        start_of(unit, rules, winding), material_of(unit, winding), conductor_section(unit, winding),
+    )  # fmt: skip
+    if duty.symmetrical is None or material is None or section is None or start.value is None or duration.value is None:
+        return _missing(winding, duty, {"material": material, "section": section, "start": start.value})
     reference = rules.reference_temperature(unit.rating.immersion).value
-    share = unit.windings[winding].eddy_share
-    wanted = {
-        "the duty": duty.symmetrical,
-        f"windings.{winding}.conductor_material": material,
-        f"windings.{winding}.conductor_section": section,
-        "rating.start_temperature": start.value,
-    }
-    keys = tuple(key for key, value in wanted.items() if value is None)
-    id_ = f"thermal.{winding}.temperature"
-    if duty.symmetrical is None:
-        return Missing(id_, keys, "the current of the winding is not assessed")
-    if material is None or section is None or start.value is None or duration.value is None:
-        return Missing(id_, keys, "the temperature cannot be worked out without these inputs")
     return HeatInputs(
         winding=winding,
         case=duty.symmetrical_case,
@@ -133,11 +120,24 @@ def heat_inputs(unit: Unit, rules: RuleSet, winding: str, duties: DutyLike, dura
         section=section,
         start=Quantity(start.value, "degC"),
         duration=Quantity(duration.value, "s"),
-        insulation=unit.windings[winding].insulation_section,
-        eddy_share=share,
+        insulation=own.insulation_section,
+        eddy_share=own.eddy_share,
         reference=Quantity(reference, "degC") if reference is not None else None,
         x_over_r=x_over_r_of(duties, duty.symmetrical_case),
     )
+
+
+def _missing(winding: str, duty: WindingDuty, found: Mapping[str, object]) -> Missing:
+    keys = {
+        "material": f"windings.{winding}.conductor_material",
+        "section": f"windings.{winding}.conductor_section",
+        "start": "rating.start_temperature",
+    }
+    wanted = tuple(key for name, key in keys.items() if found[name] is None)
+    id_ = f"thermal.{winding}.temperature"
+    if duty.symmetrical is None:
+        return Missing(id_, ("the duty", *wanted), "the current of the winding is not assessed")
+    return Missing(id_, wanted, "the temperature cannot be worked out without these inputs")
 
 
 def limit_of(unit: Unit, rules: RuleSet, winding: str, material: str | None) -> LimitOrReason:
