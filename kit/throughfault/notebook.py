@@ -17,7 +17,7 @@ from throughfault import __version__
 from throughfault.declare import Algorithm, Cell, Fragment, registry
 from throughfault.errors import InputError, did_you_mean
 from throughfault.render.blocks import algorithm_block, formula_block
-from throughfault.render.html import section
+from throughfault.render.html import clause, note, section
 from throughfault.render.parts.duty import duty_part
 from throughfault.render.parts.finding import requirement_part, thermal_part
 from throughfault.render.parts.signature import signature_part
@@ -150,8 +150,19 @@ def unit_data(book: Workbook) -> Shown:
 
 def requirement(book: Workbook) -> Shown:
     """Show what the standard asks of the unit."""
-    found = book.review.requirement.fragment
-    return Shown(requirement_part(found.entry(), found.steps), book.emit(found))
+    found = book.review.requirement
+    words = {True: "required", False: "extra"}
+    html = requirement_part(
+        found.fragment.entry(),
+        found.fragment.steps,
+        Markup("{} {}").format(
+            found.category.name or f"none: {found.category.note}",
+            clause(found.category.source, found.category.provenance),
+        ),
+        [(line.label, line.outcome.id, line.remark) for line in found.asked],
+        [(kind.fault, words[bool(kind.required)]) for kind in found.faults],
+    )
+    return Shown(html, book.emit(found.fragment))
 
 
 def duty(book: Workbook) -> Shown:
@@ -211,5 +222,5 @@ def calculation(book: Workbook, name: str) -> Shown:
     if isinstance(made, Algorithm):
         return Shown(section(made.title, algorithm_block(made, anchor="calculation"), id=f"library-{name}"), {})
     steps = book.review.steps(name)
-    content = Markup("").join(formula_block(step, anchor="calculation") for step in steps) or Markup("<p>No step of this review uses it.</p>")
+    content = formula_block(steps, anchor="calculation") if steps else note("No step of this review uses it.")
     return Shown(section(made.title, content, id=f"library-{name}"), book.emit(Fragment(steps=steps)))

@@ -35,12 +35,11 @@ def test_one_call_equals_a_call_per_case_and_the_ratio_is_reported(benchmark, ca
     together = benchmark.pedantic(solve, (unit, cases), rounds=3, warmup_rounds=1)
     start = perf_counter()
     alone = [solve(unit, cases[number]) for number in range(COUNT)]
-    ratio = (perf_counter() - start) / benchmark.stats.stats.median
-    benchmark.extra_info.update(cases=COUNT, ratio=round(ratio, 1), needed=NEEDED)
-    with capsys.disabled():
-        print(
-            f"\nnetwork: {COUNT} cases in one call {ratio:.1f} times faster than one call per case (needed: {NEEDED})"
-        )
+    if benchmark.stats is not None:  # None where benchmarks are disabled: the comparison below still counts
+        ratio = (perf_counter() - start) / benchmark.stats.stats.median
+        benchmark.extra_info.update(cases=COUNT, ratio=round(ratio, 1), needed=NEEDED)
+        with capsys.disabled():
+            print(f"\nnetwork: {COUNT} cases in one call {ratio:.1f} times faster than one by one (needed: {NEEDED})")
     for name in ("coil_current", "terminal_current", "neutral_current", "fault_current"):
         expected = np.concatenate([getattr(one, name) for one in alone])
         assert np.abs(getattr(together, name) - expected).max() <= 1e-9 * np.abs(expected).max()

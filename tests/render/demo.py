@@ -101,7 +101,7 @@ THERMAL = Fragment(
     ),
     steps=tuple(s for s in steps() if s.id.startswith("thermal")), checks=CHECKS[:2],
 )
-REQUIREMENT = Fragment(quantities=(outcome("requirement.minimum_impedance", 11.0, "%", "z"), outcome("requirement.category", 2.0, "1", "")))
+REQUIREMENT = Fragment(quantities=(outcome("requirement.minimum_impedance", 11.0, "%", "z"),))
 VERDICT = Fragment(checks=CHECKS, missing=MISSING, open_points=POINTS)
 DEFAULTS = {"rating.core": "three-limb", "system.HV.x0_over_x1": "1 and 3, both run", "windings.HV.eddy_share": "0"}
 UNCONFIRMED = ("thermal.LV.temperature",)
@@ -156,7 +156,7 @@ def html():
     return {
         "summary": parts.summary_part(RESULTS, UNCONFIRMED, forces=True),
         "unit_data": parts.unit_data_part(INPUTS, DEFAULTS),
-        "requirement": parts.requirement_part(REQUIREMENT.entry()),
+        "requirement": parts.requirement_part(REQUIREMENT.entry(), (), "II", [("minimum impedance", "requirement.minimum_impedance", "")], [("3ph", "required")]),
         "duty": parts.duty_part(DUTY.entry(), DUTY.steps, [drawn["wave"], drawn["duty"]], [registry()["peak_factor_exact"]]),
         "thermal": parts.thermal_part(THERMAL.entry(), THERMAL.steps, [drawn["temperature"], drawn["through"]]),
         "verdict": parts.verdict_part(RESULTS["verdicts"], RESULTS["checks"], UNCONFIRMED, RESULTS["route"]),

@@ -118,6 +118,6 @@ def test_formula_block_holds_formula_worked_line_and_result(step):
     shown = formula_block(step)
     assert shown.count('class="equation"') == shown.count('class="equation worked"') == len(step.cell.formula.lines)
     assert f"({step.cell.source.provenance})" in shown
-    assert data_ids(shown)[-1] == (f"steps/{step.id}/result", repr(step.result.value))
+    assert data_ids(shown)[0] == (f"steps/{step.id}/result", repr(step.result.value))
     assert len(data_ids(shown)) == len(step.arguments) + 1
     assert loose_digits(shown) == []

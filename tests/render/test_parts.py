@@ -62,13 +62,23 @@ def test_defaults_are_named():
     assert "No default was needed." in parts.unit_data_part({}, {})
 
 
-def test_every_case_is_shown():
-    """R.m.s. and peak of every phase of every winding and terminal."""
+def test_every_case_is_shown_by_its_largest_phase():
+    """R.m.s. and peak of the phase that carries most, for every winding of every case with current."""
     ids = {id_ for id_, _ in data_ids(PARTS["duty"])}
     for case in demo.CASES:
-        for kind in ("currents", "terminals"):
-            for name, phases in case[kind].items():
-                assert {f"cases/{case['id']}/{kind}/{name}/{p}/{m}" for p in phases for m in ("rms", "peak")} <= ids
+        for name, phases in case["currents"].items():
+            for measure in ("rms", "peak"):
+                most = max(phases, key=lambda p, m=measure, held=phases: held[p][m])
+                assert f"cases/{case['id']}/currents/{name}/{most}/{measure}" in ids
+
+
+def test_a_case_without_current_in_the_transformer_is_left_out():
+    """A fault fed by its own terminal's network stands in the results file only."""
+    still = {**demo.CASES[0], "id": "principal/HV/3ph/HV"}
+    none = {"rms": 0.0, "angle": 0.0, "peak": 0.0}
+    still["currents"] = {name: dict.fromkeys(phases, none) for name, phases in still["currents"].items()}
+    shown = parts.duty_part({**demo.DUTY.entry(), "cases": [*demo.CASES, still]})
+    assert "cases/principal/HV/3ph/HV/" not in {id_[: len("cases/principal/HV/3ph/HV/")] for id_, _ in data_ids(shown)}
 
 
 def test_every_quantity_of_a_part_is_shown():

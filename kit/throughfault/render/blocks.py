@@ -30,10 +30,20 @@ from throughfault.render.latex import formula_lines, worked_lines
 from throughfault.render.mathml import mathml
 from throughfault.render.numbers import quantity_text
 
-__all__ = ["algorithm_block", "check_table", "formula_block", "missing_list", "open_point_list", "utilisation_bar"]
+__all__ = [
+    "algorithm_block",
+    "check_table",
+    "formula_block",
+    "formula_blocks",
+    "missing_list",
+    "open_point_list",
+    "step_name",
+    "utilisation_bar",
+]
 
 FULL_BAR = 1.25  # the bar's right end; its mark at 1 stands at four fifths
 BAR_STEPS = 125
+WIDEST = 3  # evaluations beside each other in one table of arguments
 
 Entry = Mapping[str, Any]
 
@@ -42,36 +52,64 @@ def _lines(lines: Iterable[str], kind: str) -> Markup:
     return joined(Markup('<div class="{}">{}</div>').format(kind, mathml(line, display=True)) for line in lines)
 
 
-def _arguments(step: Step) -> Markup:
+def _arguments(steps: Sequence[Step]) -> Markup:
+    """Set the arguments: a row each, a column of numbers for every evaluation."""
+    cell = steps[0].cell
     rows = [
         [
-            mathml(step.cell.symbol(name).latex),
-            label(step.cell.symbol(name).description),
-            quantity(f"steps/{step.id}/arguments/{name}", q.value, q.unit),
+            mathml(cell.symbol(name).latex),
+            label(cell.symbol(name).description),
+            *(
+                quantity(f"steps/{s.id}/arguments/{name}", s.arguments[name].value, s.arguments[name].unit)
+                for s in steps
+            ),
         ]
-        for name, q in step.arguments.items()
+        for name in steps[0].arguments
     ]
-    return table("Where", ["Symbol", "Quantity", Column("Value", numeric=True)], rows, "where")
+    heads = [Column(step_name(step) if len(steps) > 1 else "Value", numeric=True) for step in steps]
+    return table("Where", ["Symbol", "Quantity", *heads], rows, "where several" if len(steps) > 1 else "where")
 
 
-def formula_block(step: Step, heading: Text | None = None, anchor: str = "step") -> Markup:
-    """Show a step: title, citation, formula, the same with the run's numbers, arguments and result.
+def step_name(step: Step) -> Markup:
+    """Write the id of a step so that it may break at its dots."""
+    return Markup('<span class="identity step-name">{}</span>').format(step.id.replace(".", ".\N{ZERO WIDTH SPACE}"))
 
-    A step shown a second time on a page takes another `anchor`.
-    """
-    cell = step.cell
+
+def _worked(step: Step) -> Markup:
     result = quantity(f"steps/{step.id}/result", step.result.value, step.result.unit)
+    return Markup('<div class="run"><p class="of">{}: {} = {}</p>{}</div>').format(
+        step_name(step), mathml(step.cell.result.latex), result, _lines(worked_lines(step), "equation worked")
+    )
+
+
+def formula_block(steps: Step | Sequence[Step], heading: Text | None = None, anchor: str = "step") -> Markup:
+    """Show evaluations of one cell: title, citation, the formula, then each with its own numbers and result.
+
+    Steps shown a second time on a page take another `anchor`.
+    """
+    runs = [steps] if isinstance(steps, Step) else list(steps)
+    cell = runs[0].cell
+    chunks = [runs[start : start + WIDEST] for start in range(0, len(runs), WIDEST)]
     return Markup(
         '<section class="formula" aria-labelledby="{id}"><h4 id="{id}">{title}</h4>'
-        '<p class="source">{source}</p><div class="work"><div>{formula}{worked}</div>{where}</div>'
-        '<p class="result">{description}: {symbol} = {result}</p></section>\n'
+        '<p class="source">{gives}. {source}</p>{formula}{work}</section>\n'
     ).format(
-        id=f"{anchor}-{slug(step.id)}", title=label(cell.title) if heading is None else heading,
-        source=clause(cell.source.citation, cell.source.provenance),
-        formula=_lines(formula_lines(cell), "equation"), worked=_lines(worked_lines(step), "equation worked"),
-        where=_arguments(step), description=label(sentence(cell.result.description)),
-        symbol=mathml(cell.result.latex), result=result,
+        id=f"{anchor}-{slug(runs[0].id)}", title=label(cell.title) if heading is None else heading,
+        source=clause(cell.source.citation, cell.source.provenance), gives=label(sentence(cell.result.description)),
+        formula=_lines(formula_lines(cell), "equation"),
+        work=joined(
+            Markup('<div class="work"><div>{}</div>{}</div>').format(joined(map(_worked, chunk)), _arguments(chunk))
+            for chunk in chunks
+        ),
     )  # fmt: skip
+
+
+def formula_blocks(steps: Iterable[Step], anchor: str = "step") -> Markup:
+    """Show steps by cell, each formula once, in the order in which cells are first used."""
+    by_cell: dict[str, list[Step]] = {}
+    for step in steps:
+        by_cell.setdefault(step.cell.name, []).append(step)
+    return joined(formula_block(group, anchor=anchor) for group in by_cell.values())
 
 
 def algorithm_block(algorithm: Algorithm, content: Text = "", anchor: str = "cell") -> Markup:

@@ -50,7 +50,9 @@ def thermal_figures(thermal: Thermal) -> list[Markup]:
     curves = {name: w.curve for name, w in thermal.windings.items() if w.curve}
     if curves:
         limits = {name: w.limit.value for name, w in thermal.windings.items() if w.limit is not None}
-        drawn = temperature_curve({name: (c["time"], c["standard"]) for name, c in curves.items()}, limits)
+        durations = {w.duration.value for name, w in thermal.windings.items() if name in curves}
+        common = durations.pop() if len(durations) == 1 else None
+        drawn = temperature_curve({name: (c["time"], c["standard"]) for name, c in curves.items()}, limits, common)
         caption = "Temperature of every winding by the deciding form while its largest symmetrical current flows."
         alternative = "Temperature of each winding over the duration of the fault, with the permitted temperature."
         figures.append(figure_html(drawn, "figure-temperature", caption, alternative))

@@ -8,7 +8,7 @@ from typing import Any
 from markupsafe import Markup
 
 from throughfault.declare import Algorithm, Step
-from throughfault.render.blocks import algorithm_block, check_table, formula_block
+from throughfault.render.blocks import algorithm_block, check_table, formula_blocks
 from throughfault.render.html import Column, Text, breakable, data, identity, joined, note, section, table
 from throughfault.render.numbers import decimals_of
 from throughfault.render.parts.result import case_name, origins, reasons, result_list, result_matrix
@@ -75,55 +75,41 @@ def _by_tapping(cases: Sequence[Entry]) -> Markup:
     return table("Largest phase current of each winding by tapping", columns, groups, "by-tapping")
 
 
-def _values(case: Entry, kind: str, name: str, phases: Sequence[str]) -> tuple[list[str], list[float | None]]:
-    """Return ids and values of a row: r.m.s. of each phase, then peak of each phase."""
-    entries = dict(_phases(case, kind, name))
-    paths = [(f"cases/{case['id']}/{kind}/{name}/{phase}", m) for m in MEASURES for phase in phases]
-    return [f"{path}/{m}" for path, m in paths], [entries.get(path, {}).get(m) for path, m in paths]
+def _flows(case: Entry) -> bool:
+    return any(entry["rms"] for name in case["currents"] for _, entry in _phases(case, "currents", name))
 
 
-def _case_body(case: Entry, kind: str, phases: Sequence[str], decimals: int) -> Markup:
-    extra = Markup('<br><span class="extra">extra to the standard</span>')
+def _case_row(case: Entry, names: Sequence[str], decimals: Mapping[str, int]) -> Markup:
+    """Set one case: of each winding the phase that carries most."""
+    extra = Markup(' <span class="extra">extra</span>')
+    cells = []
+    for name in names:
+        for measure in MEASURES:
+            found = _largest([case], name, measure)
+            shown = data(found[0], found[1], f"{found[1]:.{decimals[name]}f}") if found else Markup("")
+            cells.append(Markup('<td class="number">{}</td>').format(shown))
     asked = Markup("") if case["required_by_standard"] else extra
-    head = Markup('<th scope="rowgroup" rowspan="{}">{}{}</th>').format(len(case[kind]), breakable(case["id"]), asked)
-    rows = []
-    for name in case[kind]:
-        ids, values = _values(case, kind, name, phases)
-        shown = (data(i, v, f"{v:.{decimals}f}") if v is not None else "" for i, v in zip(ids, values, strict=True))
-        cells = joined(Markup('<td class="number">{}</td>').format(cell) for cell in shown)
-        rows.append(Markup('<tr>{}<th scope="row">{}</th>{}</tr>\n').format(head, identity(name), cells))
-        head = Markup("")
-    return Markup('<tbody class="case">{}</tbody>\n').format(joined(rows))
+    return Markup('<tr><th scope="row">{}{}</th>{}</tr>\n').format(breakable(case["id"]), asked, joined(cells))
 
 
-def _decimals(cases: Sequence[Entry], kind: str, phases: Sequence[str]) -> int:
-    """Choose one count of decimals for the table, by the winding that carries least."""
-    by_name: dict[str, list[float | None]] = {}
-    for case in cases:
-        for name in case[kind]:
-            by_name.setdefault(name, []).extend(_values(case, kind, name, phases)[1])
-    return max((decimals_of(values) for values in by_name.values()), default=0)
-
-
-def _all_cases(cases: Sequence[Entry], kind: str, caption: str) -> Markup:
-    """Set the complete table of cases, a body of rows for each."""
-    these = [case for case in cases if case[kind]]
-    if not these:
-        return Markup("")
-    phases = list(dict.fromkeys(p for case in these for name in case[kind] for p in case[kind][name]))
-    decimals = _decimals(these, kind, phases)
-    over = joined(
-        Markup('<th scope="colgroup" colspan="{}" class="over">{}</th>').format(len(phases), f"{word}, {CURRENT}")
-        for word in ("R.m.s.", "First peak")
+def _all_cases(cases: Sequence[Entry]) -> Markup:
+    """Set the table of cases, one row for each in which current flows through the transformer."""
+    these = [case for case in cases if _flows(case)]
+    names = list(dict.fromkeys(name for case in these for name in case["currents"]))
+    largest = {name: [_largest([case], name, m) for case in these for m in MEASURES] for name in names}
+    decimals = {name: decimals_of([found[1] for found in all_ if found]) for name, all_ in largest.items()}
+    over = joined(Markup('<th scope="colgroup" colspan="2" class="over">{}</th>').format(identity(n)) for n in names)
+    units = joined(
+        Markup('<th scope="col" class="number">{}, {}</th>').format(word, CURRENT)
+        for _ in names
+        for word in ("r.m.s.", "peak")
     )
-    letters = joined(Markup('<th scope="col" class="number">{}</th>').format(p) for p in [*phases, *phases])
-    head = Markup('<tr><td></td><td></td>{}</tr><tr><th scope="col">Case</th><th scope="col">{}</th>{}</tr>').format(
-        over, "Winding" if kind == "currents" else "Terminal", letters
-    )
-    body = joined(_case_body(case, kind, phases, decimals) for case in these)
+    head = Markup('<tr><td></td>{}</tr><tr><th scope="col">Case</th>{}</tr>').format(over, units)
+    body = joined(_case_row(case, names, decimals) for case in these)
     return Markup(
-        '<div class="scroll"><table class="cases"><caption>{}</caption><thead>{}</thead>\n{}</table></div>\n'
-    ).format(caption, head, body)  # fmt: skip
+        '<div class="scroll"><table class="cases"><caption>Largest phase current of each winding, by case</caption>'
+        "<thead>{}</thead>\n<tbody>{}</tbody></table></div>\n"
+    ).format(head, body)
 
 
 def duty_part(
@@ -150,7 +136,7 @@ def duty_part(
         result_list("Neutrals and further currents", _further(quantities)),
         reasons(quantities), origins(quantities),
     ])  # fmt: skip
-    worked = joined([*map(formula_block, steps), *map(algorithm_block, algorithms)])
+    worked = joined([formula_blocks(steps), *map(algorithm_block, algorithms)])
     parts: list[Text] = [governing, _by_tapping(cases) if cases else "", *figures]
     if entry["checks"]:
         parts.append(check_table(entry["checks"], "Currents held against short-time ratings"))
@@ -164,10 +150,10 @@ def duty_part(
 def _every_case(cases: Sequence[Entry]) -> list[Markup]:
     return [
         note(
-            "A case is named by tapping, faulted terminal, kind of fault and infeed; a, b and c are the phases. Cases "
-            "the standard does not ask for are marked; they count for the governing values as well. Angles stand in "
-            "the results file."
+            "A case is named by tapping, faulted terminal, kind of fault, infeed, and by what of the data was varied. "
+            "Cases beyond the standard's are marked extra; they count for the governing values as well. Faults fed by "
+            "their own terminal's network alone, with no current in the transformer, are left out here. Every phase of "
+            "windings, terminals and neutrals, with its angle, stands in the results file."
         ),
-        _all_cases(cases, "currents", "Phase currents of the windings in every case"),
-        _all_cases(cases, "terminals", "Currents at the line terminals in every case"),
+        _all_cases(cases),
     ]

@@ -8,8 +8,19 @@ from typing import Any
 from markupsafe import Markup
 
 from throughfault.declare import Step
-from throughfault.render.blocks import check_table, formula_block, open_point_list
-from throughfault.render.html import Text, joined, section
+from throughfault.render.blocks import check_table, formula_blocks, open_point_list
+from throughfault.render.html import (
+    Column,
+    Text,
+    clause,
+    definitions,
+    identity,
+    label,
+    quantity,
+    section,
+    sentence,
+    table,
+)
 from throughfault.render.parts.result import origins, reasons, result_list, result_matrix
 
 __all__ = ["finding_part", "requirement_part", "thermal_part"]
@@ -54,7 +65,7 @@ def finding_part(
     if entry["open_points"]:
         parts.append(section("To note", open_point_list(entry["open_points"]), id=f"{prefix}-points", level=3))
     if steps:
-        parts.append(section("Worked", joined(map(formula_block, steps)), id=f"{prefix}-worked", level=3))
+        parts.append(section("Worked", formula_blocks(steps), id=f"{prefix}-worked", level=3))
     return section(title, *parts, id=prefix)
 
 
@@ -68,6 +79,45 @@ def thermal_part(entry: Entry, steps: Sequence[Step] = (), figures: Sequence[Tex
     return finding_part("Thermal ability", "thermal", "Winding", entry, steps, figures, content)
 
 
-def requirement_part(entry: Entry, steps: Sequence[Step] = (), content: Text = "") -> Markup:
-    """Show what the standard asks of this unit."""
-    return finding_part("What the standard asks", "requirement", "Subject", entry, steps, (), content)
+def requirement_part(
+    entry: Entry,
+    steps: Sequence[Step],
+    category: Text,
+    lines: Sequence[tuple[str, str, str]],
+    faults: Sequence[tuple[str, str]],
+) -> Markup:
+    """Show what the standard asks of this unit.
+
+    Parameters
+    ----------
+    category
+        In words, with its source.
+    lines
+        Label, id of the result and remark of each thing asked.
+    faults
+        Kind of fault, and whether the standard requires it.
+    """
+    quantities = entry["quantities"]
+    rows: list[list[Text]] = [
+        [
+            label(sentence(name)),
+            quantity(id_, quantities[id_]["value"], quantities[id_]["unit"]),
+            clause(quantities[id_]["source"], quantities[id_]["provenance"]),
+            label(remark),
+        ]
+        for name, id_, remark in lines
+    ]
+    kinds: list[list[Text]] = [[identity(fault), asked] for fault, asked in faults]
+    asked = table(
+        "Values asked and taken", ["What", Column("Value", numeric=True), "Source", "Remark"], rows, "results"
+    )
+    parts: list[Text] = [definitions([("Category", category)]), asked, reasons(quantities)]
+    if kinds:
+        parts.append(table("Kinds of fault run", ["Fault", "By the standard"], kinds))
+    if entry["open_points"]:
+        parts.append(
+            section("What it leaves open", open_point_list(entry["open_points"]), id="requirement-points", level=3)
+        )
+    if steps:
+        parts.append(section("Worked", formula_blocks(steps), id="requirement-worked", level=3))
+    return section("What the standard asks", *parts, id="requirement")

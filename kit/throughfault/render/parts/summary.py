@@ -36,9 +36,7 @@ def _identity(results: Entry) -> Markup:
         ("Transformer", identity(unit["title"])),
         ("Tag, revision", identity(f"{unit['tag']}, {unit['revision']}")),
     ]
-    pairs += [
-        (name.capitalize(), identity(given[name])) for name in ("purchaser", "maker", "order") if given.get(name)
-    ]
+    pairs += [(name.capitalize(), identity(given[name])) for name in ("purchaser", "maker", "order") if given.get(name)]
     pairs.append(("Standard", clause(source_text(results["standard"]))))
     pairs.append(("Made with", version(f"Throughfault {results['kit']['version']}")))
     return definitions(pairs)

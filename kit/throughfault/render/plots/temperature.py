@@ -37,9 +37,7 @@ def temperature_curve(
         for number, (name, (time, values)) in enumerate(temperature.items()):
             marks = {"marker": MARKERS[number % len(MARKERS)], "markevery": max(1, len(values) // MARKS)}
             line = {"color": INK, "linestyle": LINES[number % len(LINES)], "markerfacecolor": "white"}
-            ax.plot(time, values, label=name, markersize=4.5, **marks, **line)
-            end, text = (time[-1], values[-1]), f"winding {name}"
-            ax.annotate(text, end, xytext=(6, -3), textcoords="offset points", annotation_clip=False)
+            ax.plot(time, values, label=f"winding {name}", markersize=4.5, **marks, **line)
         for value in dict.fromkeys(limit.values()):
             names = ", ".join(name for name, held in limit.items() if held == value)
             ax.axhline(value, color=ACCENT, linewidth=1.6)
@@ -47,9 +45,10 @@ def temperature_curve(
                         color=ACCENT, fontweight="bold")  # fmt: skip
         if duration is not None:
             ax.axvline(duration, color=INK, linewidth=0.8, linestyle=LINES[2])
-            ax.annotate(f"fault duration {duration:g} s", (duration, ax.get_ylim()[0]), xytext=(-5, 6),
-                        textcoords="offset points", ha="right", va="bottom")  # fmt: skip
+            ax.annotate(f"fault duration {duration:g} s", (duration, 0.0), xycoords=("data", "axes fraction"),
+                        xytext=(5, 5), textcoords="offset points", ha="left", va="bottom")  # fmt: skip
         ax.set_xlabel("time since the fault began, s")
         ax.set_ylabel("winding temperature, °C")
         ax.margins(x=0.0, y=0.12)
+        ax.legend(loc="center right")
         return drawn

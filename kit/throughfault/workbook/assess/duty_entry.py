@@ -89,6 +89,7 @@ def case_entry(solved: Solved, rules: RuleSet, number: int) -> dict[str, Any]:
     separate = len(unit.windings) == 2 and not unit.group.auto
     required = rules.required_by_standard(case.fault, two_winding=separate, phases=unit.rating.phases)
     winding, terminal = solved.currents("winding")[number], solved.currents("terminal")[number]
+    neutral = solved.currents("neutral")[number]
     names = list(unit.windings)
     driving = solved.driving[number]
     return {
@@ -102,6 +103,11 @@ def case_entry(solved: Solved, rules: RuleSet, number: int) -> dict[str, Any]:
         "driving_point": {"resistance": float(driving.real), "reactance": float(driving.imag), "unit": "ohm"},
         "peak_factor": {"value": factor.value, "how": factor.how, "source": factor.source},
         "currents": {n: _phasors(winding[i], factor.value) for i, n in enumerate(names)},
+        "neutrals": {
+            n: _phasors(neutral[i], factor.value)["a"]
+            for i, n in enumerate(names)
+            if unit.earthing.get(n, "isolated") != "isolated"
+        },
         "terminals": {
             n: _phasors(terminal[i], factor.value) for i, n in enumerate(names) if not unit.windings[n].stabilising
         },

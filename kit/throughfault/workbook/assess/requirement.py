@@ -20,8 +20,6 @@ from throughfault.workbook.inputs.windings import PRINCIPAL
 
 __all__ = ["Asked", "FaultKind", "Requirement", "SystemUsed", "assess_requirement"]
 
-CATEGORIES = ("I", "II", "III", "IV")
-
 
 @dataclass(frozen=True, slots=True)
 class FaultKind:
@@ -76,9 +74,6 @@ def assess_requirement(unit: Unit, rules: RuleSet, duty: DutyLike) -> Requiremen
 
 
 def _category(found: Lines, category: Category) -> None:
-    number = None if category.name is None else float(CATEGORIES.index(category.name) + 1)
-    tabled = Tabled(number, "1", category.source, category.provenance, "H", category.note)
-    found.tabled("requirement.category", tabled, "n", "category, as a number")
     if category.name is None:
         text = f"The unit belongs to no category of the standard: {category.note}."
         found.points.append(OpenPoint("requirement.category", text, clause=category.source))

@@ -2,11 +2,12 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
 from typing import Any
 
 from throughfault.declare import ABILITIES, Check, Fragment, Missing, OpenPoint, overall_verdict, verdict_of
+from throughfault.errors import did_you_mean
 from throughfault.workbook.inputs import Unit
 
 __all__ = ["NO_ROUTE", "Conclusion", "conclude", "route_check"]
@@ -60,7 +61,7 @@ def conclude(unit: Unit, checks: Sequence[Check]) -> Conclusion:
     verdicts: dict[str, str] = {a: verdict_of(c for c in everything if c.ability == a) for a in ABILITIES}
     worst = overall_verdict(verdict_of(c for c in everything if c.ability == a) for a in ABILITIES)
     unconfirmed = tuple(check for check in everything if check.unconfirmed)
-    points = tuple(_unconfirmed_point(check) for check in unconfirmed)
+    points = (*(_unconfirmed_point(check) for check in unconfirmed), *_unused_limits(unit, everything))
     fragment = Fragment(checks=everything, missing=(missing,), open_points=points)
     return Conclusion(everything, {**verdicts, "overall": worst}, NO_ROUTE, unconfirmed, fragment)
 
@@ -68,3 +69,12 @@ def conclude(unit: Unit, checks: Sequence[Check]) -> Conclusion:
 def _unconfirmed_point(check: Check) -> OpenPoint:
     template = f"{check.id}: a recalled limit carries the verdict; a signatory must confirm it from a licensed copy"
     return OpenPoint(f"limit.{check.id}", template, clause=check.limit.source if check.limit else "", blocking=True)
+
+
+def _unused_limits(unit: Unit, checks: Sequence[Check]) -> Iterator[OpenPoint]:
+    """Yield a point for each limit of the unit file that no check of this review takes."""
+    known = {check.id for check in checks}
+    for name, limit in unit.limits.items():
+        if name not in known:
+            template = f"limits.'{name}': no check of this review takes this limit{did_you_mean(name, known)}"
+            yield OpenPoint(f"limits.{name}", template, clause=limit.source)

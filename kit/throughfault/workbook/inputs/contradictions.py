@@ -34,9 +34,7 @@ def contradictions(file: UnitFile) -> list[Fault]:
     return made
 
 
-def _each(
-    checks: Checks, subjects: Callable[[], Iterable[str | int]], made: list[Fault], *given: object
-) -> None:
+def _each(checks: Checks, subjects: Callable[[], Iterable[str | int]], made: list[Fault], *given: object) -> None:
     """Run checks on each winding, row, terminal or coil, so that a refused value spoils its own only."""
     try:
         found = list(subjects())

@@ -66,9 +66,9 @@ class Block(Section):
 class Conductor(Section):
     """The conductor of a coil."""
 
-    kind: Annotated[
-        Literal["strip", "twin", "transposed", "foil"], OneOf(("strip", "twin", "transposed", "foil"))
-    ] = key("Kind of conductor.", DESIGN)
+    kind: Annotated[Literal["strip", "twin", "transposed", "foil"], OneOf(("strip", "twin", "transposed", "foil"))] = (
+        key("Kind of conductor.", DESIGN)
+    )
     material: Material = key("Material.", DESIGN)
     strand_radial: Length = key("Radial size of one bare strand.", DESIGN)
     strand_axial: Length = key("Axial size of one bare strand.", DESIGN)
@@ -78,9 +78,7 @@ class Conductor(Section):
     radial_count: Whole = key("Strips, twins or cables across the whole radial build of the coil.", DESIGN)
     axial_count: Whole = key("Conductors in parallel, stacked axially, in one turn.", DESIGN, default=1)
     bonded: Yes = key("Resin-bonded.", DESIGN, default=False)
-    proof_stress: Stress | None = key(
-        "Rp0.2, guaranteed minimum at 20 degC.", "conductor's certificate", default=None
-    )
+    proof_stress: Stress | None = key("Rp0.2, guaranteed minimum at 20 degC.", "conductor's certificate", default=None)
     covering: Covering = key("Paper or enamel, both sides together.", DESIGN, default=Quantity(0.0, "mm"))
 
     @property
@@ -106,9 +104,9 @@ class Coil(Section):
 
     name: Name = key("Name of the coil, used in result ids.", DESIGN)
     winding: Name = key("Winding it belongs to; several coils of a winding are in series.", DESIGN)
-    kind: Annotated[
-        Literal["disc", "helical", "layer", "foil"], OneOf(("disc", "helical", "layer", "foil"))
-    ] = key("Kind of coil.", DESIGN)
+    kind: Annotated[Literal["disc", "helical", "layer", "foil"], OneOf(("disc", "helical", "layer", "foil"))] = key(
+        "Kind of coil.", DESIGN
+    )
     inner_radius: Length = key("Inner radius.", DESIGN)
     outer_radius: Length = key("Outer radius.", DESIGN)
     parallel_paths: Whole = key("Parallel paths; each carries its share of the current.", DESIGN, default=1)
@@ -136,13 +134,9 @@ class Clamping(Section):
     ring_thickness: Length | None = key("Thickness of the press ring.", DESIGN, default=None)
     ring_material: Title | None = key("Material of the press ring.", DESIGN, default=None)
     clamping_points: Whole | None = key("Points at which the ring is pressed.", DESIGN, default=None)
-    tie_section: Area | None = key(
-        "Section of the tie rods or flitch plates of one limb.", DESIGN, default=None
-    )
+    tie_section: Area | None = key("Section of the tie rods or flitch plates of one limb.", DESIGN, default=None)
     tie_yield: Stress | None = key("Yield stress of the ties.", DESIGN, default=None)
-    end_stack_thickness: Length | None = key(
-        "Insulation between coil and yoke, one end.", DESIGN, default=None
-    )
+    end_stack_thickness: Length | None = key("Insulation between coil and yoke, one end.", DESIGN, default=None)
 
 
 class Design(Section):

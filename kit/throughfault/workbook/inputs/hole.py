@@ -18,9 +18,7 @@ class Hole:
         raise HoleMetError
 
     __getattr__ = __eq__ = __ne__ = __lt__ = __le__ = __gt__ = __ge__ = __bool__ = __iter__ = __len__ = _met
-    __getitem__ = __contains__ = __float__ = __add__ = __radd__ = __mul__ = __rmul__ = __sub__ = __rsub__ = (
-        _met
-    )
+    __getitem__ = __contains__ = __float__ = __add__ = __radd__ = __mul__ = __rmul__ = __sub__ = __rsub__ = _met
     __truediv__ = __rtruediv__ = __neg__ = __abs__ = __hash__ = __str__ = _met
 
     def __repr__(self) -> str:

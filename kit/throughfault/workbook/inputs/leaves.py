@@ -66,9 +66,7 @@ class Leaf:
     def __get_pydantic_core_schema__(self, _source: Any, _handler: GetCoreSchemaHandler) -> CoreSchema:
         return core_schema.no_info_plain_validator_function(self._validated)
 
-    def __get_pydantic_json_schema__(
-        self, _core: CoreSchema, _handler: GetJsonSchemaHandler
-    ) -> dict[str, Any]:
+    def __get_pydantic_json_schema__(self, _core: CoreSchema, _handler: GetJsonSchemaHandler) -> dict[str, Any]:
         return self.schema()
 
 

@@ -36,10 +36,7 @@ def report(name: str, faults: Iterable[Fault], places: dict[KeyPath, list[int]])
     placed = [(line_of(fault.path, places), path_text(fault.path), fault.text) for fault in faults]
     placed.sort(key=lambda p: p[0] or 0)
     more = [f"{name}: {len(placed) - MOST_FAULTS} more faults."] if len(placed) > MOST_FAULTS else []
-    told = [
-        f"{name}: {f'[line {line}] ' if line else ''}{path}: {text}"
-        for line, path, text in placed[:MOST_FAULTS]
-    ]
+    told = [f"{name}: {f'[line {line}] ' if line else ''}{path}: {text}" for line, path, text in placed[:MOST_FAULTS]]
     return told + more
 
 
@@ -58,9 +55,7 @@ def faults_of(error: ValidationError) -> Iterator[Fault]:
         elif entry["type"] == "refused":
             yield Fault(path, f"{str(entry['msg']).removesuffix('.')}{_source(location)}.")
         elif entry["type"] == "too_short":
-            if not any(
-                _inside(other, location) for other in locations
-            ):  # else the entries have faults of their own
+            if not any(_inside(other, location) for other in locations):  # else the entries have faults of their own
                 least, got = entry["ctx"]["min_length"], entry["ctx"]["actual_length"]
                 yield Fault(
                     path,
@@ -104,11 +99,7 @@ def _wanted(location: KeyPath) -> str:
     leaf = leaf_of(field) if field is not None else None
     if leaf is not None:
         return leaf.wanted
-    if (
-        field is not None
-        and get_origin(plain_type(field.annotation)) is tuple
-        and not isinstance(location[-1], int)
-    ):
+    if field is not None and get_origin(plain_type(field.annotation)) is tuple and not isinstance(location[-1], int):
         return f"an array of tables [[{path_text(_file_path(location))}]]"
     return "a table"
 

@@ -40,16 +40,10 @@ class UnitFile(Section):
     zero_sequence: ZeroSequence | None = key("Magnetising zero-sequence impedance.", default=None)
     tap_changer: Withstand | None = key("Tap changer.", default=None)
     bushings: dict[Name, Withstand] = key("Bushings or leads, by winding.", default={}, at_most=MOST_WINDINGS)
-    neutral: dict[Name, Withstand] = key(
-        "Neutral bushings or leads, by winding.", default={}, at_most=MOST_WINDINGS
-    )
+    neutral: dict[Name, Withstand] = key("Neutral bushings or leads, by winding.", default={}, at_most=MOST_WINDINGS)
     design: Design | None = key("Mechanical design.", default=None)
-    limits: dict[ResultId, Limit] = key(
-        "A signatory's own limits, by check id.", default={}, at_most=MOST_RESULTS
-    )
-    declared: dict[ResultId, Declared] = key(
-        "What the maker states, by result id.", default={}, at_most=MOST_RESULTS
-    )
+    limits: dict[ResultId, Limit] = key("A signatory's own limits, by check id.", default={}, at_most=MOST_RESULTS)
+    declared: dict[ResultId, Declared] = key("What the maker states, by result id.", default={}, at_most=MOST_RESULTS)
 
     @property
     def group(self) -> VectorGroup:

@@ -46,9 +46,7 @@ def tapping_against_its_name(unit: Unit) -> Iterator[OpenPoint]:
     for name, winding in unit.windings.items():
         for tapping, voltage in winding.tappings.items():
             higher = voltage.to("V") - winding.rated_voltage.to("V")
-            wrong = (tapping.startswith("plus") and higher < 0.0) or (
-                tapping.startswith("minus") and higher > 0.0
-            )
+            wrong = (tapping.startswith("plus") and higher < 0.0) or (tapping.startswith("minus") and higher > 0.0)
             if wrong:
                 yield OpenPoint(
                     f"input.{name}.{tapping}.against_its_name",
@@ -91,17 +89,11 @@ def sources(unit: Unit) -> Iterator[OpenPoint]:
     """Find unusual sources, and a unit without any."""
     for name, source in unit.system.terminals.items():
         rated = unit.windings[name].rated_voltage
-        if (
-            source.x_over_r is not None
-            and not USUAL_SOURCE_X_OVER_R[0] <= source.x_over_r <= USUAL_SOURCE_X_OVER_R[1]
-        ):
+        if source.x_over_r is not None and not USUAL_SOURCE_X_OVER_R[0] <= source.x_over_r <= USUAL_SOURCE_X_OVER_R[1]:
             text = f"X/R of the network at {name} is {{ratio}}; usual are {{least}} to {{most}}."
             values = _ratios(source.x_over_r, USUAL_SOURCE_X_OVER_R)
             yield OpenPoint(f"input.system.{name}.x_over_r", text, values, "common practice")
-        if (
-            source.voltage is not None
-            and abs(source.voltage.to("V") / rated.to("V") - 1.0) > USUAL_VOLTAGE_DIFFERENCE
-        ):
+        if source.voltage is not None and abs(source.voltage.to("V") / rated.to("V") - 1.0) > USUAL_VOLTAGE_DIFFERENCE:
             text = f"The network at {name} is stated at {{voltage}}, its terminals are rated {{rated}}."
             yield OpenPoint(f"input.system.{name}.voltage", text, {"voltage": source.voltage, "rated": rated})
     if all(source.short_circuit_power is None for source in unit.system.terminals.values()):
@@ -112,9 +104,7 @@ def sources(unit: Unit) -> Iterator[OpenPoint]:
 def tap_changer_without_tappings(unit: Unit) -> Iterator[OpenPoint]:
     """Find a tap changer in a unit without tappings."""
     if unit.tap_changer is not None and len(unit.tappings) == 1:
-        yield OpenPoint(
-            "input.tap_changer.no_tappings", "A tap changer is given, but no winding has tappings."
-        )
+        yield OpenPoint("input.tap_changer.no_tappings", "A tap changer is given, but no winding has tappings.")
 
 
 def _ratios(ratio: float, usual: tuple[float, float]) -> dict[str, Quantity]:

@@ -70,8 +70,7 @@ def coils_in_order(_unit: Unit, design: Design) -> Iterator[OpenPoint]:
     for before, coil in zip(design.coils, design.coils[1:], strict=False):
         if coil.inner_radius.to("mm") < before.inner_radius.to("mm"):
             text = (
-                f"Coil {coil.name} stands inside coil {before.name}, which is listed before it; "
-                "innermost comes first."
+                f"Coil {coil.name} stands inside coil {before.name}, which is listed before it; innermost comes first."
             )
             yield OpenPoint(f"input.{coil.name}.order", text)
 

@@ -87,9 +87,7 @@ def _decoded(data: bytes, name: str) -> str:
         return data.decode("utf-8-sig")
     except UnicodeDecodeError as error:
         line = data[: error.start].count(b"\n") + 1
-        raise UnitFileError(
-            f"{name}: [line {line}] must be UTF-8 text, got byte 0x{data[error.start]:02x}."
-        ) from None
+        raise UnitFileError(f"{name}: [line {line}] must be UTF-8 text, got byte 0x{data[error.start]:02x}.") from None
 
 
 def _parsed(text: str, name: str) -> dict[str, Any]:

@@ -72,9 +72,7 @@ def coil_names(_file: UnitFile, design: Design) -> Iterator[Fault]:
         first = seen.setdefault(coil.name.casefold(), index)
         if first != index:
             other = design.coils[first].name
-            yield Fault(
-                ("design", "coils", index, "name"), f"repeats the name of coil {first + 1}, '{other}'."
-            )
+            yield Fault(("design", "coils", index, "name"), f"repeats the name of coil {first + 1}, '{other}'.")
 
 
 def coils_apart(_file: UnitFile, design: Design) -> Iterator[Fault]:
@@ -84,9 +82,7 @@ def coils_apart(_file: UnitFile, design: Design) -> Iterator[Fault]:
             across = _overlap(_radii(coil), _radii(other))
             along = _longest_overlap(_all_heights(coil), _all_heights(other)) if across > TOUCH else 0.0
             if along > TOUCH:
-                text = (
-                    f"overlaps coil '{other.name}' by {across:.4g} mm in radius and {along:.4g} mm in height."
-                )
+                text = f"overlaps coil '{other.name}' by {across:.4g} mm in radius and {along:.4g} mm in height."
                 yield Fault(("design", "coils", index), text)
 
 
@@ -160,9 +156,7 @@ def coil_blocks(file: UnitFile, design: Design, index: int) -> Iterator[Fault]:
     window, heights = design.core.window_height, _all_heights(coil)
     for number, block in enumerate(coil.blocks):
         if block.top.to("mm") <= block.bottom.to("mm"):
-            yield Fault(
-                (*path, number), f"must have its top above its bottom, {block.bottom}, got {block.top}."
-            )
+            yield Fault((*path, number), f"must have its top above its bottom, {block.bottom}, got {block.top}.")
         if block.top.to("mm") > window.to("mm") + TOUCH:
             yield Fault((*path, number), f"must end within the window, {window}, got top {block.top}.")
         for other in range(number):
@@ -188,9 +182,7 @@ def coil_conductor(_file: UnitFile, design: Design, index: int) -> Iterator[Faul
     conductor, path = design.coils[index].conductor, ("design", "coils", index, "conductor", "strands")
     fixed = {"strip": 1, "foil": 1, "twin": 2}.get(conductor.kind)
     if fixed is not None and conductor.strand_count != fixed:
-        yield Fault(
-            path, f'must be {fixed} for a conductor of kind "{conductor.kind}", got {conductor.strands}.'
-        )
+        yield Fault(path, f'must be {fixed} for a conductor of kind "{conductor.kind}", got {conductor.strands}.')
     if fixed is None and conductor.strands is None:
         yield Fault(path, 'is missing; a conductor of kind "transposed" must state the strands of one cable.')
 

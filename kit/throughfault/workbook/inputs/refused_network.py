@@ -89,9 +89,7 @@ def _needs_neutral(file: UnitFile, name: str, path: tuple[str, ...]) -> Iterator
             f"belongs under '{first}': an autotransformer has one neutral, named with its first winding.",
         )
     elif connection.letter == "D":
-        yield Fault(
-            path, f"must not be given: '{name}' is a delta in {symbol}, which has no neutral to earth."
-        )
+        yield Fault(path, f"must not be given: '{name}' is a delta in {symbol}, which has no neutral to earth.")
     elif not connection.neutral:
         text = f"must not be given: the neutral of '{name}' is not brought out in {symbol}."
         yield Fault(path, text)

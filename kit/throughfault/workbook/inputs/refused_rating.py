@@ -28,9 +28,7 @@ def phases_and_letters(file: UnitFile) -> Iterator[Fault]:
         yield Fault(("rating", "bank"), "is true for single-phase units only, but rating.phases is 3.")
     elif single and (phases == 3 or bank):
         whose = "a bank" if bank else "a three-phase unit"
-        yield Fault(
-            ("rating", "vector_group"), f"has the letter I of a single-phase unit, but this is {whose}."
-        )
+        yield Fault(("rating", "vector_group"), f"has the letter I of a single-phase unit, but this is {whose}.")
     elif not single and phases == 1 and not bank:
         text = "has three-phase letters, but rating.phases is 1 and rating.bank is not true."
         yield Fault(("rating", "vector_group"), text)
@@ -126,9 +124,7 @@ def stabilising_first(file: UnitFile) -> Iterator[Fault]:
     """See that at least two windings are brought out."""
     out = [n for n, c in file.connections.items() if not (c.stabilising or file.windings[n].stabilising)]
     if len(out) < 2:
-        yield Fault(
-            ("windings",), "must have at least two that are brought out; stabilising windings are not."
-        )
+        yield Fault(("windings",), "must have at least two that are brought out; stabilising windings are not.")
 
 
 RATING_CHECKS = (

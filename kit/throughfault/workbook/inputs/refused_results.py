@@ -77,16 +77,12 @@ def limits(file: UnitFile) -> Iterator[Fault]:
 def _known(file: UnitFile, result: str, path: KeyPath) -> Iterator[Fault]:
     family, name = result.split(".")[:2]
     if family not in FAMILIES:
-        yield Fault(
-            path, f"is not a result: '{family}' is no family of results{unknown_name(family, FAMILIES)}"
-        )
+        yield Fault(path, f"is not a result: '{family}' is no family of results{unknown_name(family, FAMILIES)}")
         return
     names = _names(file, FAMILIES[family])
     if names and name not in names and not (family == "strength" and name == "clamping"):
         wanted = FAMILIES[family]
-        yield Fault(
-            path, f"is not a result: '{name}' is not a {wanted}{unknown_name(name, dict.fromkeys(names))}"
-        )
+        yield Fault(path, f"is not a result: '{name}' is not a {wanted}{unknown_name(name, dict.fromkeys(names))}")
 
 
 def _names(file: UnitFile, wanted: str) -> list[str]:

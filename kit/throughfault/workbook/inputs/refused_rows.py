@@ -46,9 +46,7 @@ def resistance_below_impedance(file: UnitFile, index: int) -> Iterator[Fault]:
     resistance, impedance = row.resistance_value.to("%"), row.impedance.to("%")
     if resistance >= impedance:
         key = "resistance" if row.resistance is not None else "load_loss"
-        text = (
-            f"makes a resistance of {resistance:.4g} %, which must be below the impedance, {row.impedance}."
-        )
+        text = f"makes a resistance of {resistance:.4g} %, which must be below the impedance, {row.impedance}."
         yield Fault(("impedances", index, key), text)
 
 
@@ -85,9 +83,7 @@ def zero_sequence_path(file: UnitFile, index: int) -> Iterator[Fault]:
         yield Fault(path, "must not be given for a single-phase unit, which has no zero sequence.")
     elif set(row.between) <= set(file.windings) and not _has_path(file, row):
         first, second = row.between
-        text = (
-            f"must not be given where no path exists: between '{first}' and '{second}' of {file.group.symbol}"
-        )
+        text = f"must not be given where no path exists: between '{first}' and '{second}' of {file.group.symbol}"
         yield Fault(path, f"{text} no zero-sequence current can flow.")
 
 
@@ -114,9 +110,7 @@ def magnetising_winding(file: UnitFile) -> Iterator[Fault]:
     if at not in file.windings:
         yield Fault(path, f"names '{at}', which is not a winding{unknown_name(at, file.windings)}")
     elif not _reaches_earth(file, file.connections[at]):
-        text = (
-            f"names '{at}', which has no neutral in {file.group.symbol}: no zero-sequence current can enter."
-        )
+        text = f"names '{at}', which has no neutral in {file.group.symbol}: no zero-sequence current can enter."
         yield Fault(path, text)
 
 

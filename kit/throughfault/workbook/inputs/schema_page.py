@@ -54,9 +54,7 @@ def _tables(section: type[Section], path: str, heading: str) -> Iterator[str]:
             rows.append(_row(name, field, entry if get_origin(kind) is dict else None))
     if rows:
         about = (section.__doc__ or "").strip().split("\n")[0].replace("``", "`")
-        head = (
-            "| key | meaning | must be | unit | required or default | source |\n|---|---|---|---|---|---|\n"
-        )
+        head = "| key | meaning | must be | unit | required or default | source |\n|---|---|---|---|---|---|\n"
         yield f"## {heading[0].upper()}{heading[1:]}\n\n{about}\n\n{head}{''.join(rows)}"
     for kind, where, title in inner:
         yield from _tables(kind, where, title)

@@ -25,9 +25,7 @@ def starter(kind: str, tag: str) -> str:
     faults = []
     if kind not in KINDS_OF_UNIT:
         known = ", ".join(KINDS_OF_UNIT)
-        faults.append(
-            f"kind must be one of {known}, got {shown(kind)}{did_you_mean(kind[:64], KINDS_OF_UNIT)}."
-        )
+        faults.append(f"kind must be one of {known}, got {shown(kind)}{did_you_mean(kind[:64], KINDS_OF_UNIT)}.")
     if not TAG.fullmatch(tag):
         faults.append(f"tag must be {TAG_FORM}, got {shown(tag)}.")
     if faults:

@@ -34,16 +34,14 @@ class Source(Section):
         default=None,
         in_words="rated_voltage",
     )
-    short_circuit_power: Annotated[Quantity | Literal["table"] | None, Either(Measure("MVA"), ("table",))] = (
-        key(
-            'Fault level, three-phase; "table" takes the standard\'s default for highest_voltage.',
-            NETWORK,
-            default=None,
-            in_words="no infeed",
-        )
+    short_circuit_power: Annotated[Quantity | Literal["table"] | None, Either(Measure("MVA"), ("table",))] = key(
+        'Fault level, three-phase; "table" takes the standard\'s default for highest_voltage.',
+        NETWORK,
+        default=None,
+        in_words="no infeed",
     )
-    column: Annotated[Literal["european", "north american"] | None, OneOf(("european", "north american"))] = (
-        key('Practice followed by "table".', NETWORK, default=None, in_words="as the standard's edition")
+    column: Annotated[Literal["european", "north american"] | None, OneOf(("european", "north american"))] = key(
+        'Practice followed by "table".', NETWORK, default=None, in_words="as the standard's edition"
     )
     short_circuit_power_minimum: Power | None = key(
         "Lowest fault level; those cases are run too.", NETWORK, default=None
@@ -62,9 +60,7 @@ class Source(Section):
         "agreement between purchaser and maker",
         default=None,
     )
-    out_of_phase: Angle | None = key(
-        "Angle of out-of-phase closing, where it is to be run.", NETWORK, default=None
-    )
+    out_of_phase: Angle | None = key("Angle of out-of-phase closing, where it is to be run.", NETWORK, default=None)
     series_reactance: Ohm | None = key("Reactor between network and terminal.", NETWORK, default=None)
     terminal_fault_excluded: Title | None = key(
         "Why a fault at the terminals of a stabilising winding of a bank cannot occur.", NETWORK, default=None
@@ -74,12 +70,10 @@ class Source(Section):
 class System(Section):
     """The networks; in the file the terminals stand beside ``prefault_voltage`` as [system.HV] and so on."""
 
-    prefault_voltage: Annotated[float | dict[str, float], ByTapping(Number(0.5, 1.5, least_allowed=True))] = (
-        key(
-            "Voltage before the fault, per unit of the tapping's voltage; may be a table by tapping.",
-            NETWORK,
-            default=1.0,
-        )
+    prefault_voltage: Annotated[float | dict[str, float], ByTapping(Number(0.5, 1.5, least_allowed=True))] = key(
+        "Voltage before the fault, per unit of the tapping's voltage; may be a table by tapping.",
+        NETWORK,
+        default=1.0,
     )
     terminals: dict[Name, Source] = key(
         "One table for each terminal with a network behind it.", default={}, at_most=MOST_WINDINGS
@@ -97,10 +91,6 @@ class System(Section):
 class Withstand(Section):
     """What a component in the current's way is proven for."""
 
-    short_time_current: Current | None = key(
-        "Short-time current, rms.", "component's data sheet", default=None
-    )
-    duration: Duration | None = key(
-        "Duration of the short-time current.", "component's data sheet", default=None
-    )
+    short_time_current: Current | None = key("Short-time current, rms.", "component's data sheet", default=None)
+    duration: Duration | None = key("Duration of the short-time current.", "component's data sheet", default=None)
     peak_current: Current | None = key("Peak current.", "component's data sheet", default=None)

@@ -92,9 +92,7 @@ def _following(symbol: str, before: list[WindingConnection], found: re.Match[str
     allowed = _clocks(before[0], made)
     if clock not in allowed:
         hours = ", ".join(str(h) for h in allowed)
-        raise _refused(
-            symbol, f"has clock number {clock} behind '{letters}', which can only be one of {hours}"
-        )
+        raise _refused(symbol, f"has clock number {clock} behind '{letters}', which can only be one of {hours}")
     return made
 
 

@@ -65,9 +65,5 @@ class Winding(Section):
         in_words="principal only",
     )
     thermal_class: Class | None = key("As rating.thermal_class.", PLATE, default=None, in_words="as [rating]")
-    start_temperature: Temperature | None = key(
-        "As rating.start_temperature.", default=None, in_words="as [rating]"
-    )
-    fault_duration: Duration | None = key(
-        "As rating.fault_duration.", ORDER, default=None, in_words="as [rating]"
-    )
+    start_temperature: Temperature | None = key("As rating.start_temperature.", default=None, in_words="as [rating]")
+    fault_duration: Duration | None = key("As rating.fault_duration.", ORDER, default=None, in_words="as [rating]")

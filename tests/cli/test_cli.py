@@ -1,0 +1,225 @@
+"""The command line: what each command prints, and with which exit code it leaves."""
+
+import json
+import shutil
+import subprocess
+from pathlib import Path
+
+import pytest
+from cryptography.hazmat.primitives.asymmetric.ed25519 import Ed25519PrivateKey
+from cryptography.hazmat.primitives.serialization import Encoding, NoEncryption, PrivateFormat, PublicFormat
+
+from throughfault import __version__
+from throughfault.cli import main as entry_point
+from throughfault.cli.main import commands, run
+
+EXAMPLES = (Path(__file__).parents[2] / "example_reviews").resolve()
+T1 = str(EXAMPLES / "BV-T1" / "unit.toml")
+
+
+@pytest.fixture
+def call(capfd):
+    def go(*arguments):
+        code = run([str(a) for a in arguments])
+        out, err = capfd.readouterr()
+        return code, out, err
+
+    return go
+
+
+@pytest.fixture
+def key(tmp_path):
+    made = Ed25519PrivateKey.generate()
+    path = tmp_path / "id_ed25519"
+    path.write_bytes(made.private_bytes(Encoding.PEM, PrivateFormat.OpenSSH, NoEncryption()))
+    path.chmod(0o600)
+    public = made.public_key().public_bytes(Encoding.OpenSSH, PublicFormat.OpenSSH).decode()
+    signers = tmp_path / "allowed_signers"
+    signers.write_text(f'mara@bwv.example namespaces="throughfault-author,throughfault-checker" {public}\n')
+    return path, signers
+
+
+def test_version_and_help(call):
+    """The version is printed, and every command's help has an example."""
+    assert call("--version")[:2] == (0, f"throughfault, version {__version__}\n")
+    code, out, _ = call("--help")
+    assert code == 0
+    for name in commands.commands:
+        assert name in out
+        assert f"Example: throughfault {name}" in call(name, "--help")[1]
+
+
+def test_entry_point_leaves_with_the_code():
+    """The installed command exits with the code of the run."""
+    with pytest.raises(SystemExit) as left:
+        entry_point(["check", "nowhere.toml"])
+    assert left.value.code == 2
+
+
+def test_new_writes_a_file_that_checks(call, tmp_path, monkeypatch):
+    """Each kind of starting file is valid; an existing file is left alone."""
+    monkeypatch.chdir(tmp_path)
+    for kind in ("two-winding", "three-winding", "auto", "distribution"):
+        tag = f"BV-{kind}"
+        assert call("new", tag, "--kind", kind)[0] == 0
+        assert call("check", f"{tag}.toml")[0] == 0
+    code, _, err = call("new", "BV-auto")
+    assert (code, err) == (2, "throughfault: BV-auto.toml: exists already and is left as it is; give another --out.\n")
+    assert call("new", "X", "--out", tmp_path / "no" / "x.toml")[0] == 2
+
+
+def test_check_prints_every_fault(call, tmp_path):
+    """All faults come at once, each a sentence with its key, and exit code 2."""
+    text = Path(T1).read_text(encoding="utf-8").replace('"132 kV"', '"132"', 1).replace('frequency = "50 Hz"', 'frequncy = "50 Hz"')
+    path = tmp_path / "unit.toml"
+    path.write_text(text, encoding="utf-8")
+    code, out, err = call("check", path)
+    assert (code, out) == (2, "")
+    assert "windings.HV.rated_voltage: must be a voltage" in err
+    assert "frequncy" in err
+    assert "did you mean 'frequency'?" in err
+    assert "Traceback" not in err
+
+
+@pytest.mark.parametrize("content", [b"", b"\xff\xfe\x00", b"format = ", b"a" * 2_000_000, b"[" * 5000])
+def test_what_is_no_unit_file_is_refused(call, tmp_path, content):
+    """Empty, binary, truncated, huge or deeply nested files give one report and exit code 2."""
+    path = tmp_path / "unit.toml"
+    path.write_bytes(content)
+    for command in ("check", "review"):
+        code, _, err = call(command, path, *(("--out", tmp_path / "records") if command == "review" else ()))
+        assert code == 2
+        assert err.startswith("throughfault: ")
+        assert "Traceback" not in err
+    assert [p.name for p in tmp_path.iterdir()] == ["unit.toml"]
+
+
+def test_schema_is_json(call):
+    """The schema is printed as JSON."""
+    code, out, _ = call("schema")
+    assert code == 0
+    assert json.loads(out)["$schema"].startswith("https://json-schema.org/")
+
+
+def test_cells_lists_and_shows(call):
+    """The library is listed; one cell shows formula, symbols, source, range and checks."""
+    code, out, _ = call("cells")
+    assert code == 0
+    assert "average_temperature_copper" in out
+    assert "thermal" in out
+    code, out, _ = call("cells", "average_temperature_copper")
+    assert code == 0
+    for word in ("106000", "A/mm", "recalled", "4.1.5", "tests/"):
+        assert word in out
+    assert call("cells", "fault_currents")[0] == 0
+    assert call("cells", "thermal")[1] == "thermal: part of a workbook. Winding temperature at the end of the fault.\n"
+    code, _, err = call("cells", "averge_temperature_copper")
+    assert (code, err) == (
+        2,
+        "throughfault: cells: NAME must be a cell of the library, got 'averge_temperature_copper' "
+        "(did you mean 'average_temperature_copper'?).\n",
+    )
+
+
+def test_assemble_writes_a_template_that_runs(call, tmp_path, monkeypatch):
+    """A template is built from names, not overwritten unasked, and can be run by its name."""
+    monkeypatch.chdir(tmp_path)
+    assert call("assemble", "--cells", "duty, current_density", "short")[0] == 0
+    code, _, err = call("assemble", "--cells", "duty", "short")
+    assert (code, err) == (2, "throughfault: templates/short.ipynb: exists already; --replace would replace it.\n")
+    code, out, _ = call("review", T1, "--template", "short", "--out", "records")
+    assert code == 0
+    assert "Current density" in (tmp_path / "records" / "BV-T1-A" / "record.html").read_text(encoding="utf-8")
+    code, _, err = call("reproduce", "records/BV-T1-A")
+    assert (code, err) == (
+        2,
+        "throughfault: --template: the record was made with 'short', which the kit does not ship; give its path.\n",
+    )
+    assert call("reproduce", "records/BV-T1-A", "--template", "templates/short.ipynb")[0] == 0
+
+
+def test_from_unit_file_to_signature(call, tmp_path, key):
+    """Review, sign twice, verify in every way, refuse to approve and to overwrite, find a changed file."""
+    private, signers = key
+    code, out, _ = call("review", T1, "--out", tmp_path / "records")
+    assert code == 0
+    for word in ("thermal.HV.temperature", "withstands", "not assessed", "Record: ", "limits unconfirmed"):
+        assert word in out
+    record = tmp_path / "records" / "BV-T1-A"
+    assert call("verify", record)[0] == 0
+    sign = ("sign", record, "--key", private, "--signer", "mara@bwv.example")
+    assert call(*sign, "--role", "author", "--comment", "first issue")[0] == 0
+    assert call(*sign, "--role", "checker")[0] == 0
+    code, _, err = call(*sign, "--role", "approver")
+    assert code == 2
+    assert "thermal.HV.temperature" in err
+    assert call("verify", record)[0] == 3
+    assert call("verify", record, "--signers", signers, "--require", "author,checker")[0] == 0
+    assert call("verify", record, "--signers", signers, "--require", "approver")[0] == 1
+    code, _, err = call("review", T1, "--out", tmp_path / "records")
+    assert (code, err) == (2, f"throughfault: {record}: is signed and stays as it is; give the unit file another revision.\n")
+    assert call("reproduce", record)[0] == 0
+    (record / "results.json").write_bytes((record / "results.json").read_bytes().replace(b"within", b"Within", 1))
+    code, out, _ = call("verify", record, "--signers", signers)
+    assert code == 1
+    assert "results.json" in out
+
+
+@pytest.mark.skipif(shutil.which("ssh-keygen") is None, reason="OpenSSH is not installed")
+def test_openssh_and_coreutils_check_a_record_without_the_kit(call, record, key):
+    """ssh-keygen accepts the signature and sha256sum the files."""
+    private, signers = key
+    assert call("sign", record, "--role", "author", "--key", private, "--signer", "mara@bwv.example")[0] == 0
+    statement = record / "signatures" / "01-author.json"
+    command = ["ssh-keygen", "-Y", "verify", "-f", signers, "-I", "mara@bwv.example", "-n", "throughfault-author", "-s", statement.with_suffix(".sig")]
+    assert subprocess.run(command, stdin=statement.open("rb"), capture_output=True, check=False).returncode == 0
+    assert subprocess.run(["sha256sum", "-c", "SHA256SUMS"], cwd=record, capture_output=True, check=False).returncode == 0
+
+
+def test_strict_answers_with_its_exit_code(call, tmp_path):
+    """--strict leaves with 1 unless the overall verdict is 'withstands'."""
+    assert call("review", T1, "--out", tmp_path, "--strict")[0] == 1
+
+
+def test_reproduce_says_no(call, record):
+    """A changed number is named and the exit code is 1."""
+    path = record / "results.json"
+    results = json.loads(path.read_bytes())
+    results["quantities"]["duty.LV.peak"]["value"] += 0.001
+    path.write_text(json.dumps(results))
+    code, out, _ = call("reproduce", record)
+    assert code == 1
+    assert "quantities/duty.LV.peak/value: record " in out
+    assert "1 differences in" in out
+
+
+@pytest.mark.parametrize(
+    "arguments",
+    [("nonsense",), ("review",), ("sign", "x", "--role", "boss", "--key", "k", "--signer", "s"), ("check", "missing.toml"), ("verify", "missing"), ("reproduce", "missing"), ("assemble", "--cells", "x", "y")],
+)
+def test_wrong_calls_leave_with_2(call, arguments):
+    """Unknown commands, missing arguments and missing files are bad input."""
+    code, _, err = call(*arguments)
+    assert code == 2
+    assert err
+    assert "Traceback" not in err
+
+
+def test_interruption_and_faults_of_the_kit(call, monkeypatch):
+    """Ctrl-C leaves with 130, an unforeseen fault with 70 and its whole story."""
+    import throughfault.workbook.inputs as inputs
+
+    def interrupted(_):
+        raise KeyboardInterrupt
+
+    monkeypatch.setattr(inputs, "read_unit", interrupted)
+    code, _, err = call("check", T1)
+    assert (code, err.strip()) == (130, "throughfault: interrupted; nothing was written.")
+
+    def broken(_):
+        raise ZeroDivisionError
+
+    monkeypatch.setattr(inputs, "read_unit", broken)
+    code, _, err = call("check", T1)
+    assert code == 70
+    assert err.endswith("throughfault: this is a fault of the kit; nothing was written.\n")
