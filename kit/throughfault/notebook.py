@@ -138,7 +138,7 @@ def summary(book: Workbook) -> Shown:
     review = book.review
     unconfirmed = _unconfirmed(review)
     emitted = {"unit": _unit(review), "standard": review.standard, "unconfirmed": {"limits": len(unconfirmed)}}
-    return Shown(summary_part(_whole(book), unconfirmed), emitted)
+    return Shown(summary_part(_whole(book), unconfirmed, forces=True), emitted)
 
 
 def unit_data(book: Workbook) -> Shown:
