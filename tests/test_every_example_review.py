@@ -43,7 +43,11 @@ def test_every_number_of_the_page_is_in_its_results(record):
     results = json.loads((record / "results.json").read_bytes())
     for name, value in data_ids(page):
         found = lookup(results, name)
-        assert float(value) == found if isinstance(found, float) else value == (str(found).lower() if isinstance(found, bool) else str(found))
+        assert (
+            float(value) == found
+            if isinstance(found, float)
+            else value == (str(found).lower() if isinstance(found, bool) else str(found))
+        )
     assert loose_digits(page) == []
     assert lint(page) == []
 

@@ -50,7 +50,16 @@ def test_it_runs_with_an_example(template, tmp_path):
 @pytest.mark.slow
 def test_stock_nbconvert_keeps_an_executed_workbook_readable(issued, tmp_path):
     """The plain exporter shows the same parts, with their numbers."""
-    command = [sys.executable, "-m", "nbconvert", "--to", "html", "--output-dir", str(tmp_path), str(issued.folder / "workbook.ipynb")]
+    command = [
+        sys.executable,
+        "-m",
+        "nbconvert",
+        "--to",
+        "html",
+        "--output-dir",
+        str(tmp_path),
+        str(issued.folder / "workbook.ipynb"),
+    ]
     subprocess.run(command, check=True, capture_output=True)
     page = (tmp_path / "workbook.html").read_text(encoding="utf-8")
     assert "Verdict by ability" in page

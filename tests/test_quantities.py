@@ -1,5 +1,6 @@
 """Quantities: the grammar, the kinds, the conversions."""
 
+import contextlib
 import math
 
 import pytest
@@ -65,7 +66,9 @@ def test_reads_impedances(text, value):
 
 def test_refuses_an_impedance_in_volts():
     """A complex impedance of the wrong unit is refused."""
-    with pytest.raises(QuantityError, match=r"^must be an impedance such as .* got '\+12 V', which is of kind voltage\.$"):
+    with pytest.raises(
+        QuantityError, match=r"^must be an impedance such as .* got '\+12 V', which is of kind voltage\.$"
+    ):
         parse_impedance("5 ohm + 12j V")
 
 
@@ -73,7 +76,9 @@ def test_kinds_stand_above_dimensions():
     """A watt is no volt-ampere, and a temperature no temperature rise."""
     with pytest.raises(DeclarationError, match=r"^'MW' cannot be converted to 'MVA': power to apparent power\.$"):
         convert(1.0, "MW", "MVA")
-    with pytest.raises(DeclarationError, match=r"^'K' cannot be converted to 'degC': temperature rise to temperature\.$"):
+    with pytest.raises(
+        DeclarationError, match=r"^'K' cannot be converted to 'degC': temperature rise to temperature\.$"
+    ):
         convert(65.0, "K", "degC")
 
 
@@ -93,15 +98,13 @@ def test_conversion_there_and_back(value, kind, data):
 @given(st.text(max_size=80))
 def test_no_text_does_more_than_fail(text):
     """Whatever the text, it is read as a quantity or refused."""
-    try:
+    with contextlib.suppress(QuantityError):
         assert math.isfinite(parse(text, "V").to("V"))
-    except QuantityError:
-        pass
 
 
 def test_text_of_a_quantity_reads_back():
     """The text of a quantity is one the grammar reads."""
     for unit in UNITS:
-        if unit not in ("1",):
+        if unit != "1":
             assert parse(str(Quantity(12.5, unit)), unit) == Quantity(12.5, unit)
     assert str(Quantity(2.0, "1")) == "2"

@@ -42,7 +42,7 @@ def factor(x_over_r: Ratio) -> Factor:
 def heat(current_density: Density, duration: Duration) -> Factor:
     """Just an example."""
     J, t = current_density, duration
-    return J**2 * t if J < 100 else -(-(J**2)) * t
+    return J**2 * t if J < 100 else -(0 - J**2) * t
 
 
 def test_called_with_floats_it_is_the_function():
@@ -133,7 +133,7 @@ def loop(x_over_r: Ratio) -> Factor:
 
 def unknown_function(x_over_r: Ratio) -> Factor:
     """Example."""
-    return open(x_over_r)
+    return repr(x_over_r)
 
 
 def unused(x_over_r: Ratio, duration: Duration) -> Factor:
@@ -157,7 +157,7 @@ def swapped(x_over_r: Ratio, duration: Duration) -> Factor:
     [
         (no_symbol, {}, "no_symbol: 'x' must be annotated with a symbol."),
         (loop, {}, "loop: 'for _ in range(3):\n    x_over_r = 2 * x_over_r' cannot be printed as a formula."),
-        (unknown_function, {}, "unknown_function: 'open(x_over_r)' cannot be printed as a formula."),
+        (unknown_function, {}, "unknown_function: 'repr(x_over_r)' cannot be printed as a formula."),
         (unused, {}, "unused: the formula does not use ['duration']."),
         (no_return, {}, "no_return: a formula ends with its one return."),
         (swapped, {}, "swapped: '(x, t), y = ((x_over_r, duration), 3)' cannot be printed as a formula."),

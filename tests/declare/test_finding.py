@@ -58,7 +58,12 @@ def test_unconfirmed_means_recalled_and_deciding():
 
 @pytest.mark.parametrize(
     ("values", "verdict"),
-    [((), "not assessed"), ((1.0,), "withstands"), ((1.0, None), "not assessed"), ((None, 300.0), "does not withstand")],
+    [
+        ((), "not assessed"),
+        ((1.0,), "withstands"),
+        ((1.0, None), "not assessed"),
+        ((None, 300.0), "does not withstand"),
+    ],
 )
 def test_verdict_of_an_ability(values, verdict):
     """One check beyond its limit decides; else one not assessed blocks 'withstands'."""

@@ -8,8 +8,14 @@ import math
 import re
 
 NAMED = {
-    r"\sin": math.sin, r"\cos": math.cos, r"\tan": math.tan, r"\arctan": math.atan, r"\ln": math.log,
-    r"\log_{10}": math.log10, r"\min": min, r"\max": max,
+    r"\sin": math.sin,
+    r"\cos": math.cos,
+    r"\tan": math.tan,
+    r"\arctan": math.atan,
+    r"\ln": math.log,
+    r"\log_{10}": math.log10,
+    r"\min": min,
+    r"\max": max,
 }
 SIGNS = {"<": lambda a, b: a < b, r"\le": lambda a, b: a <= b, ">": lambda a, b: a > b, r"\ge": lambda a, b: a >= b}
 
@@ -68,7 +74,9 @@ class Reader:
         self.skip()
         for letter, value in self.letters:
             rest = self.text[self.at + len(letter) :]
-            if self.text.startswith(letter, self.at) and not (letter[-1].isalpha() and rest[:1].isalpha() and letter[0] == "\\"):
+            if self.text.startswith(letter, self.at) and not (
+                letter[-1].isalpha() and rest[:1].isalpha() and letter[0] == "\\"
+            ):
                 self.at += len(letter)
                 return value
         if match := re.match(r"\d+(?:\.\d+)?", self.text[self.at :]):

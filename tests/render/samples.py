@@ -21,7 +21,9 @@ def made(function, terms=None, valid_for=()):
     """Declare a cell without entering it in the library."""
     arguments, result = _symbols(function)
     source = Source("CircuitTheory", "sample", "derived")
-    return Cell(function, "Sample", source, arguments, terms or {}, result, valid_for, ("none",), read_formula(function))
+    return Cell(
+        function, "Sample", source, arguments, terms or {}, result, valid_for, ("none",), read_formula(function)
+    )
 
 
 def average(
@@ -43,16 +45,25 @@ def factor(ratio: Annotated[float, R]) -> Annotated[float, nom.peak_factor]:
 def brackets(first: Annotated[float, A], second: Annotated[float, B]) -> Annotated[float, Y]:
     """Every place a bracket may be due."""
     a, b = first, second
-    return -(a - b) - (a + b) * -a - a * (b * a) + (a / b) ** 2 + (a**b) ** 2 - (-a) / (a - (b - 1)) + 2.5e-7 ** a - -b
+    return -(a - b) - (a + b) * -a - a * (b * a) + (a / b) ** 2 + (a**b) ** 2 - (-a) / (a - (b - 1)) + 2.5e-7**a - -b
 
 
 def functions(first: Annotated[float, A], second: Annotated[float, B]) -> Annotated[float, Y]:
     """Every function."""
     a, b = first, second
-    return hypot(a, b + 1) + abs(a - b) * min(a, b) - max(a, 2 * b) + log(a) * log10(b) + cos(a) ** 2 + tan(b) / exp(a) ** 2
+    return (
+        hypot(a, b + 1)
+        + abs(a - b) * min(a, b)
+        - max(a, 2 * b)
+        + log(a) * log10(b)
+        + cos(a) ** 2
+        + tan(b) / exp(a) ** 2
+    )
 
 
-def branches(first: Annotated[float, A], second: Annotated[float, B], length: Annotated[float, L]) -> Annotated[float, Y]:
+def branches(
+    first: Annotated[float, A], second: Annotated[float, B], length: Annotated[float, L]
+) -> Annotated[float, Y]:
     """Two choices, one inside the other's bracket."""
     a, b = first, second
     return 2 * (a if a < b else b * 3 if a >= 2 * b else a - b) + (1 if length <= 100 else 0.001)
@@ -74,9 +85,15 @@ def signs(first: Annotated[float, A], second: Annotated[float, B]) -> Annotated[
     return -2 * a / b - (-a) * b
 
 
-AVERAGE = made(average, valid_for=(
-    Range("duration", above=0.0, at_most=10.0),
-    Condition("J^2 t below 106000", lambda current_density, duration, **_: current_density**2 * duration < 106000),
-))
+AVERAGE = made(
+    average,
+    valid_for=(
+        Range("duration", above=0.0, at_most=10.0),
+        Condition("J^2 t below 106000", lambda current_density, duration, **_: current_density**2 * duration < 106000),
+    ),
+)
 FACTOR = made(factor, {"phi": PHI})
-SAMPLES = {c.name: c for c in (AVERAGE, FACTOR, made(brackets), made(functions), made(branches), made(ratios), made(equal), made(signs))}
+SAMPLES = {
+    c.name: c
+    for c in (AVERAGE, FACTOR, made(brackets), made(functions), made(branches), made(ratios), made(equal), made(signs))
+}

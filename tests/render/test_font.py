@@ -11,7 +11,9 @@ from throughfault.errors import DeclarationError
 from throughfault.render import font
 from throughfault.render.mathml import mathml
 
-PAGE = mathml(r"\hat{\imath} = k\sqrt{2} \cdot \left(\theta_0 + \frac{h}{\Omega}\right) \begin{cases} a & b \end{cases}")
+PAGE = mathml(
+    r"\hat{\imath} = k\sqrt{2} \cdot \left(\theta_0 + \frac{h}{\Omega}\right) \begin{cases} a & b \end{cases}"
+)
 
 
 @pytest.fixture
@@ -86,5 +88,8 @@ def test_the_font_of_a_whole_record_is_small(cache):
 def test_a_missing_font_is_named(monkeypatch):
     """The package that carries it is said."""
     monkeypatch.setattr(font, "find_spec", lambda name: None)
-    with pytest.raises(DeclarationError, match=re.escape("the package 'ziamath', which carries the mathematical font, is not installed.")):
+    with pytest.raises(
+        DeclarationError,
+        match=re.escape("the package 'ziamath', which carries the mathematical font, is not installed."),
+    ):
         font.subset(frozenset({ord("z")}))

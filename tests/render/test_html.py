@@ -24,7 +24,7 @@ from throughfault.render.html import (
 )
 from throughfault.render.record import data_ids, loose_digits
 
-HOSTILE = '</script><script>alert(1)</script>"\'><img src=x onerror=alert(1)>&amp;'
+HOSTILE = "</script><script>alert(1)</script>\"'><img src=x onerror=alert(1)>&amp;"
 
 
 @pytest.mark.parametrize("made", [
@@ -43,8 +43,21 @@ def test_hostile_text_is_inert(made):
 
 def test_hostile_review_is_inert():
     """Every text of checks, points and missing inputs is escaped."""
-    check = {**demo.RESULTS["checks"][0], "id": HOSTILE, "limit_source": HOSTILE, "governing_case": HOSTILE, "reason": HOSTILE, "kit_limit": {"value": 1.0, "source": HOSTILE, "provenance": HOSTILE}}
-    point = {"id": HOSTILE, "template": HOSTILE + " {n}", "values": {"n": {"value": 1.0, "unit": "kA"}}, "clause": HOSTILE, "blocking": True}
+    check = {
+        **demo.RESULTS["checks"][0],
+        "id": HOSTILE,
+        "limit_source": HOSTILE,
+        "governing_case": HOSTILE,
+        "reason": HOSTILE,
+        "kit_limit": {"value": 1.0, "source": HOSTILE, "provenance": HOSTILE},
+    }
+    point = {
+        "id": HOSTILE,
+        "template": HOSTILE + " {n}",
+        "values": {"n": {"value": 1.0, "unit": "kA"}},
+        "clause": HOSTILE,
+        "blocking": True,
+    }
     missing = {"id": HOSTILE, "keys": (HOSTILE,), "reason": HOSTILE}
     shown = check_table([check]) + open_point_list([point]) + missing_list([missing])
     assert "<script" not in shown
@@ -53,7 +66,9 @@ def test_hostile_review_is_inert():
 
 def test_data_keeps_the_full_value():
     """The shown number is rounded, the value is not."""
-    assert data("duty.HV.peak", 4.0290000001) == Markup('<data value="4.0290000001" data-id="duty.HV.peak">4.029</data>')
+    assert data("duty.HV.peak", 4.0290000001) == Markup(
+        '<data value="4.0290000001" data-id="duty.HV.peak">4.029</data>'
+    )
     assert quantity("a", 1.0, "kA") == Markup('<data value="1.0" data-id="a">1\N{NO-BREAK SPACE}kA</data>')
     assert quantity("a", None, "kA") == Markup('<span class="absent">not assessed</span>')
 
@@ -77,7 +92,9 @@ def test_slugs():
     assert [slug("Fault currents"), slug("§")] == ["fault-currents", "part"]
 
 
-@pytest.mark.parametrize(("used", "classes"), [(0.601, "bar u60"), (1.134, "bar u113 beyond"), (7.0, "bar u125 beyond"), (1.0, "bar u100")])
+@pytest.mark.parametrize(
+    ("used", "classes"), [(0.601, "bar u60"), (1.134, "bar u113 beyond"), (7.0, "bar u125 beyond"), (1.0, "bar u100")]
+)
 def test_utilisation_bar(used, classes):
     """The width is a class; beyond the limit the bar is marked, and it never leaves its frame."""
     assert f'<span class="{classes}"' in utilisation_bar("checks/a/utilisation", used)

@@ -56,7 +56,9 @@ def test_printed_formula_is_the_function(name):
     cell, rng = CELLS[name], random.Random(name)  # noqa: S311 - repeatable points
     for _ in range(POINTS):
         values = draw(cell, rng)
-        assert read_lines(formula_lines(cell), letters(cell, values)) == pytest.approx(cell.function(**values), rel=1e-11, abs=1e-12)
+        assert read_lines(formula_lines(cell), letters(cell, values)) == pytest.approx(
+            cell.function(**values), rel=1e-11, abs=1e-12
+        )
 
 
 @pytest.mark.parametrize("name", CELLS)
@@ -81,7 +83,17 @@ def test_every_printed_line_can_be_set(name):
         assert mathml(line, display=True).startswith('<math display="block">')
 
 
-@pytest.mark.parametrize("mutant", [("235", "253"), ("106000", "16000"), ("+ 235", "- 235"), ("- 1", "+ 1"), ("^{2}", "^{3}"), (r"2 \cdot", r"3 \cdot")])
+@pytest.mark.parametrize(
+    "mutant",
+    [
+        ("235", "253"),
+        ("106000", "16000"),
+        ("+ 235", "- 235"),
+        ("- 1", "+ 1"),
+        ("^{2}", "^{3}"),
+        (r"2 \cdot", r"3 \cdot"),
+    ],
+)
 def test_a_swapped_digit_or_sign_is_caught(mutant):
     """The comparison has teeth: each single change of the printed formula is found."""
     values = draw(AVERAGE, random.Random(1))  # noqa: S311 - repeatable points
@@ -104,10 +116,17 @@ def test_the_page_of_the_closed_form():
 
 def test_worked_line_carries_units():
     """Numbers of the run stand with their units, a unit under a power in brackets."""
-    step = AVERAGE.step("s", initial_temperature=Quantity(105, "degC"), current_density=Quantity(80, "A/mm^2"), duration=Quantity(2000, "ms"))
+    step = AVERAGE.step(
+        "s",
+        initial_temperature=Quantity(105, "degC"),
+        current_density=Quantity(80, "A/mm^2"),
+        duration=Quantity(2000, "ms"),
+    )
     assert worked_lines(step) == [
-        (r"\theta_1 = 105\,\mathrm{°C} + \frac{2 \cdot \left(105\,\mathrm{°C} + 235\right)}"
-        r"{\frac{106000}{\left(80\,\mathrm{A/mm^{2}}\right)^{2} \cdot 2\,\mathrm{s}} - 1} = 198.39\,\mathrm{°C}")
+        (
+            r"\theta_1 = 105\,\mathrm{°C} + \frac{2 \cdot \left(105\,\mathrm{°C} + 235\right)}"
+            r"{\frac{106000}{\left(80\,\mathrm{A/mm^{2}}\right)^{2} \cdot 2\,\mathrm{s}} - 1} = 198.39\,\mathrm{°C}"
+        )
     ]
 
 

@@ -103,8 +103,13 @@ def test_a_result_not_assessed_gives_its_reason():
 def test_a_single_phase_unit_and_absent_currents():
     """One phase, a winding without current in a case, a part without cases."""
     case = {
-        "id": "principal/LV/LL/HV", "tapping": "principal", "fault": "LL", "at": "LV", "required_by_standard": True,
-        "currents": {"HV": {"a": {"rms": 1.0, "peak": None}}, "LV": {"a": {}}}, "terminals": {},
+        "id": "principal/LV/LL/HV",
+        "tapping": "principal",
+        "fault": "LL",
+        "at": "LV",
+        "required_by_standard": True,
+        "currents": {"HV": {"a": {"rms": 1.0, "peak": None}}, "LV": {"a": {}}},
+        "terminals": {},
     }
     entry = {"quantities": {}, "cases": [case], "checks": []}
     shown = parts.duty_part(entry)
@@ -153,17 +158,33 @@ def test_cautions():
 def test_signatures_and_how_to_verify():
     """Each role has a line; the commands need nothing of the kit but the last two."""
     shown = PARTS["signature"]
-    for told in ("Author", "Checker", "Approver", "Witness", "sha256sum -c SHA256SUMS", "ssh-keygen -Y verify", "throughfault verify BV-T1-A", "throughfault reproduce BV-T1-A"):
+    for told in (
+        "Author",
+        "Checker",
+        "Approver",
+        "Witness",
+        "sha256sum -c SHA256SUMS",
+        "ssh-keygen -Y verify",
+        "throughfault verify BV-T1-A",
+        "throughfault reproduce BV-T1-A",
+    ):
         assert told in shown
 
 
 def test_hostile_names_are_inert():
     """Markup in any text of the unit file stays text in every part."""
     bad = "<img src=x onerror=alert(1)>"
-    inputs = {bad: bad, "identity": {"purchaser": bad}, "windings": {bad: {bad: bad}}, "list": [{"name": bad, "between": [bad, bad]}]}
+    inputs = {
+        bad: bad,
+        "identity": {"purchaser": bad},
+        "windings": {bad: {bad: bad}},
+        "list": [{"name": bad, "between": [bad, bad]}],
+    }
     unit = {"tag": bad, "title": bad, "revision": bad}
     results = {**demo.RESULTS, "unit": unit, "inputs": inputs, "standard": bad}
-    shown = parts.summary_part(results, [bad]) + parts.unit_data_part(inputs, {bad: bad}) + parts.signature_part(bad, bad)
+    shown = (
+        parts.summary_part(results, [bad]) + parts.unit_data_part(inputs, {bad: bad}) + parts.signature_part(bad, bad)
+    )
     assert "<img" not in shown
 
 
@@ -184,4 +205,7 @@ def test_many_measures_stand_below_each_other():
 
 def test_a_value_that_is_no_table_is_shown():
     """A list of plain values at the top of the file has its own block."""
-    assert data_ids(parts.unit_data_part({"notes": ["one", "two"]}, {})) == [("inputs/notes/0", "one"), ("inputs/notes/1", "two")]
+    assert data_ids(parts.unit_data_part({"notes": ["one", "two"]}, {})) == [
+        ("inputs/notes/0", "one"),
+        ("inputs/notes/1", "two"),
+    ]

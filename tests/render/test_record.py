@@ -51,7 +51,10 @@ def test_policy_admits_only_the_page_s_own_style():
     """The hash is that of the style element's text."""
     style = re.search(r"<style>(.*?)</style>", PAGE, re.DOTALL)[1]
     digest = base64.b64encode(hashlib.sha256(style.encode()).digest()).decode()
-    assert f"default-src 'none'; script-src 'none'; style-src 'sha256-{digest}'; img-src data:; font-src data:; base-uri 'none'; form-action 'none'" in PAGE
+    assert (
+        f"default-src 'none'; script-src 'none'; style-src 'sha256-{digest}'; img-src data:; font-src data:; base-uri 'none'; form-action 'none'"
+        in PAGE
+    )
 
 
 def test_tag_revision_and_page_number_on_every_page():
@@ -152,7 +155,11 @@ def test_the_inspector_reads_the_frame_too(change, fault):
 
 def test_markdown_is_escaped_and_its_formulas_are_set():
     """A note cannot bring markup; formulas are MathML, code spans are names."""
-    page = record(new_markdown_cell("<script>1</script>\n\nA <b>note</b>: $\\frac{a}{b}$ and `K1`\n\n$$\nx^{2}\n$$\n\n|a|b|\n|-|-|\n|c|d|\n\n[l](javascript:x)"))
+    page = record(
+        new_markdown_cell(
+            "<script>1</script>\n\nA <b>note</b>: $\\frac{a}{b}$ and `K1`\n\n$$\nx^{2}\n$$\n\n|a|b|\n|-|-|\n|c|d|\n\n[l](javascript:x)"
+        )
+    )
     assert "<script" not in page
     assert page.count("<mfrac>") == 1
     assert '<div class="equation"><math display="block">' in page
@@ -171,7 +178,8 @@ def test_a_note_with_a_wrong_formula_is_refused():
 def test_other_outputs_are_text():
     """Plain and streamed text is escaped, Markdown is a note."""
     page = record(
-        shown("<b>plain</b>", "text/plain"), shown("*note*", "text/markdown"),
+        shown("<b>plain</b>", "text/plain"),
+        shown("*note*", "text/markdown"),
         new_code_cell("", outputs=[new_output("stream", name="stdout", text="<i>said</i>")]),
     )
     assert "&lt;b&gt;plain&lt;/b&gt;" in page
@@ -198,7 +206,9 @@ def test_an_unclean_page_is_no_record(monkeypatch):
     """The last inspection stops what slipped through."""
     monkeypatch.setattr(exporter, "sanitise", lambda text: text)
     monkeypatch.setitem(exporter.RecordExporter.template_filters, "sanitise", lambda text: text)
-    with pytest.raises(RunError, match=r"the record is not clean: line \d+: element 'script' is not on the allowlist\."):
+    with pytest.raises(
+        RunError, match=r"the record is not clean: line \d+: element 'script' is not on the allowlist\."
+    ):
         record(shown("<script>1</script>"))
 
 
@@ -213,7 +223,11 @@ def test_normalised_notebook_forgets_time_and_host():
     """Ids are numbered, times and kernels dropped, counts start at one."""
     first, second = demo.notebook(), demo.notebook()
     for count, notebook in ((7, first), (19, second)):
-        notebook.metadata.update(papermill={"start_time": count}, kernelspec={"name": f"k{count}", "display_name": "x"}, language_info={"name": "python", "version": f"3.{count}"})
+        notebook.metadata.update(
+            papermill={"start_time": count},
+            kernelspec={"name": f"k{count}", "display_name": "x"},
+            language_info={"name": "python", "version": f"3.{count}"},
+        )
         for cell in notebook.cells:
             cell.metadata["papermill"] = {"duration": count}
             cell.metadata["execution"] = {"iopub.execute_input": count}

@@ -9,8 +9,16 @@ from throughfault.render.plain import formula_text, letter_text
 from throughfault.render.text import cell_list, cell_text, verdict_table
 
 LETTERS = {
-    r"\theta_1": "θ_1", r"\hat{\imath}": "î", r"k\sqrt{2}": "k√2", r"\varphi": "φ", r"R_{\mathrm{p}0.2}": "R_p0.2",
-    r"\Omega": "Ω", r"\unknown x": "unknownx", r"\lambda": "λ", r"X/R": "X/R", r"\dot{U}": "U̇",
+    r"\theta_1": "θ_1",
+    r"\hat{\imath}": "î",
+    r"k\sqrt{2}": "k√2",
+    r"\varphi": "φ",
+    r"R_{\mathrm{p}0.2}": "R_p0.2",
+    r"\Omega": "Ω",
+    r"\unknown x": "unknownx",
+    r"\lambda": "λ",
+    r"X/R": "X/R",
+    r"\dot{U}": "U̇",
 }
 
 
@@ -82,4 +90,6 @@ def test_verdict_table():
     assert lines[7].split() == ["dynamic.route", "-", "-", "-", "not", "assessed"]
     assert lines[-2:] == ["Overall          does not withstand", "1 limit unconfirmed: recalled, see the open points."]
     assert "unconfirmed" not in verdict_table({**demo.RESULTS, "unconfirmed": {"limits": 0}})
-    assert verdict_table({**demo.RESULTS, "unconfirmed": {"limits": 2}}).endswith("2 limits unconfirmed: recalled, see the open points.")
+    assert verdict_table({**demo.RESULTS, "unconfirmed": {"limits": 2}}).endswith(
+        "2 limits unconfirmed: recalled, see the open points."
+    )

@@ -87,7 +87,9 @@ def test_a_foreign_template_must_be_named_and_be_the_recorded_one(record, tmp_pa
     other = tmp_path / "own.ipynb"
     text = module.read_template(module.find_template("rating")).data.decode()
     other.write_text(text.replace("cell-02", "cell-99"))
-    with pytest.raises(RecordError, match=r"^--template: must have the recorded SHA-256 [0-9a-f]{64}, got [0-9a-f]{64}\.$"):
+    with pytest.raises(
+        RecordError, match=r"^--template: must have the recorded SHA-256 [0-9a-f]{64}, got [0-9a-f]{64}\.$"
+    ):
         reproduce(record, other)
     other.write_bytes(text.encode())
     comparison = reproduce(record, other)
@@ -107,7 +109,12 @@ def results(issued):
 
 @pytest.mark.parametrize(
     ("name", "relative", "differs"),
-    [("duty.HV.peak", 5e-10, False), ("duty.HV.peak", 2e-9, True), ("force.HV.radial", 5e-7, False), ("force.HV.radial", 2e-6, True)],
+    [
+        ("duty.HV.peak", 5e-10, False),
+        ("duty.HV.peak", 2e-9, True),
+        ("force.HV.radial", 5e-7, False),
+        ("force.HV.radial", 2e-6, True),
+    ],
 )
 def test_tolerance_depends_on_how_a_number_is_found(results, name, relative, differs):
     """Closed forms and network agree to 1e-9, solved fields to 1e-6."""

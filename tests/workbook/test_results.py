@@ -82,7 +82,9 @@ def test_what_is_no_record_is_refused(content, tmp_path):
     """A folder without readable results of the format is no record."""
     if content is not None:
         (tmp_path / "results.json").write_bytes(content)
-    with pytest.raises(RecordError, match=r"results\.json (is missing or cannot be read|must be of format throughfault-results/1)\.$"):
+    with pytest.raises(
+        RecordError, match=r"results\.json (is missing or cannot be read|must be of format throughfault-results/1)\.$"
+    ):
         read_results(tmp_path)
 
 

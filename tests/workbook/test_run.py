@@ -48,7 +48,9 @@ def test_every_number_on_the_page_leads_to_the_results(issued):
     assert len(shown) > 200
     for name, value in shown:
         found = lookup(results, name)
-        assert (float(value) if isinstance(found, float) else value) == (found if isinstance(found, float) else str(found).lower() if isinstance(found, bool) else str(found)), name
+        assert (float(value) if isinstance(found, float) else value) == (
+            found if isinstance(found, float) else str(found).lower() if isinstance(found, bool) else str(found)
+        ), name
 
 
 def test_no_digits_stand_loose_on_the_page(issued):
@@ -197,7 +199,7 @@ def test_a_full_disk_leaves_the_old_record(record, monkeypatch, name):
 
     monkeypatch.setattr(Path, "open", full)
     monkeypatch.setattr(Path, "write_bytes", full_bytes)
-    monkeypatch.setattr(nbformat, "write", lambda nb, path: Path(path).open("w").write(nbformat.writes(nb)))
+    monkeypatch.setattr(nbformat, "write", lambda nb, path: Path(path).write_bytes(nbformat.writes(nb).encode()))
     with pytest.raises((RunError, RecordError), match="No space left on device"):
         review(T1, record.parent)
     assert {p.name: p.read_bytes() for p in record.iterdir() if p.is_file()} == before
@@ -231,7 +233,11 @@ sys.exit(run(["review", sys.argv[1], "--out", sys.argv[2]]))
 @pytest.mark.parametrize(
     ("action", "code", "message"),
     [
-        ("os.kill(int(entry.parent.name), signal.SIGKILL)", 70, "throughfault: rating: the kernel died while the workbook ran; nothing was written."),
+        (
+            "os.kill(int(entry.parent.name), signal.SIGKILL)",
+            70,
+            "throughfault: rating: the kernel died while the workbook ran; nothing was written.",
+        ),
         ("os.kill(os.getpid(), signal.SIGINT)", 130, "throughfault: interrupted; nothing was written."),
     ],
     ids=["kernel killed", "interrupted"],
@@ -240,7 +246,13 @@ def test_a_run_cut_short_leaves_the_old_record(record, action, code, message):
     """A killed kernel or Ctrl-C leaves the old record, no half one, no kernel, and says so."""
     before = {p.name: p.read_bytes() for p in record.iterdir() if p.is_file()}
     script = KILLED.replace("{action}", action)
-    done = subprocess.run([sys.executable, "-c", script, str(T1), str(record.parent)], capture_output=True, text=True, timeout=120, check=False)
+    done = subprocess.run(
+        [sys.executable, "-c", script, str(T1), str(record.parent)],
+        capture_output=True,
+        text=True,
+        timeout=120,
+        check=False,
+    )
     assert done.returncode == code, done.stderr
     assert message in done.stderr
     assert "Traceback" not in done.stderr
@@ -267,7 +279,7 @@ def test_design_data_ask_for_the_design_template():
 
 def test_hostile_text_is_inert_on_the_page(tmp_path):
     """Markup in every text of the unit file is shown, not obeyed."""
-    evil = '<script>alert(1)</script><img src=x onerror=alert(2)>&amp;'
+    evil = "<script>alert(1)</script><img src=x onerror=alert(2)>&amp;"
     text = T1.read_text(encoding="utf-8").replace('"Brackwater Vale, transformer T1"', json.dumps(evil))
     text = text.replace('"Brackwater Vale Networks"', json.dumps(evil))
     unit_file = tmp_path / "unit.toml"
@@ -284,4 +296,3 @@ def test_leftover_of_an_interrupted_exchange_is_put_back(record):
     record.rename(aside)
     review(T1, record.parent)
     assert [p.name for p in record.parent.iterdir()] == [record.name]
-

@@ -38,7 +38,10 @@ def test_a_template_that_only_calls_has_no_faults():
             new_code_cell("from throughfault import cells"),
             "may import throughfault.notebook only, got 'from throughfault import cells'.",
         ),
-        (new_code_cell("y = 2 * x"), "a notebook calls and does not compute; '2 * x' belongs in a cell of the library."),
+        (
+            new_code_cell("y = 2 * x"),
+            "a notebook calls and does not compute; '2 * x' belongs in a cell of the library.",
+        ),
         (
             new_code_cell("def f():\n    return 1"),
             "a notebook calls and does not compute; 'def f():' belongs in a cell of the library.",
@@ -65,7 +68,9 @@ def test_exactly_one_parameters_cell():
 
 def test_unknown_template_names_the_nearest():
     """A misspelt template is refused with the names there are."""
-    with pytest.raises(TemplateError, match=r"^--template: must be one of .*rating.*, got 'ratng' \(did you mean 'rating'\?\)\.$"):
+    with pytest.raises(
+        TemplateError, match=r"^--template: must be one of .*rating.*, got 'ratng' \(did you mean 'rating'\?\)\.$"
+    ):
         find_template("ratng")
 
 

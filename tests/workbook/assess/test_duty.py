@@ -215,7 +215,15 @@ def test_series_reactance_adds_to_the_source():
 def test_a_small_source_impedance_is_neglected_in_category_one():
     """630 kVA, 4 %, behind 500 MVA: the system is 3.15 % of the transformer and left out (25 times rated current)."""
     text = TWO_WINDING.format(group="Dyn11", core="three-limb", phases=3, impedance="", system="")
-    for old, new in (("40 MVA", "630 kVA"), ("132 kV", "20 kV"), ("145 kV", "24 kV"), ("33 kV", "400 V"), ("36 kV", "1.1 kV"), ("10 %", "4 %"), ("10000 MVA", "500 MVA")):
+    for old, new in (
+        ("40 MVA", "630 kVA"),
+        ("132 kV", "20 kV"),
+        ("145 kV", "24 kV"),
+        ("33 kV", "400 V"),
+        ("36 kV", "1.1 kV"),
+        ("10 %", "4 %"),
+        ("10000 MVA", "500 MVA"),
+    ):
         text = text.replace(old, new)
     duty = duty_of(read_unit_text(text, "unit.toml"))
     entry = next(e for e in duty.entries if e["id"] == "principal/LV/3ph/HV")
@@ -225,7 +233,9 @@ def test_a_small_source_impedance_is_neglected_in_category_one():
 def test_no_infeed_is_reported_not_guessed():
     """Without any network behind a terminal nothing is assessed, and the key is named."""
     unit = make(system="")
-    text = TWO_WINDING.format(group="YNd11", core="three-limb", phases=3, impedance="", system="").split("[system.HV]")[0]
+    text = TWO_WINDING.format(group="YNd11", core="three-limb", phases=3, impedance="", system="").split("[system.HV]")[
+        0
+    ]
     duty = duty_of(read_unit_text(text, "unit.toml"))
     assert duty.entries == ()
     assert duty.windings["HV"].symmetrical is None
@@ -236,7 +246,10 @@ def test_no_infeed_is_reported_not_guessed():
 def test_missing_impedance_row_leaves_its_tapping_out():
     """The cases of a tapping without impedance row are not assessed, and the row is named."""
     text = TWO_WINDING.format(group="YNd11", core="three-limb", phases=3, impedance="", system="")
-    text = text.replace('highest_voltage = "145 kV"', 'highest_voltage = "145 kV"\ntappings = { plus = "138.6 kV", principal = "132 kV" }')
+    text = text.replace(
+        'highest_voltage = "145 kV"',
+        'highest_voltage = "145 kV"\ntappings = { plus = "138.6 kV", principal = "132 kV" }',
+    )
     duty = duty_of(read_unit_text(text, "unit.toml"))
     assert {entry["tapping"] for entry in duty.entries} == {"principal"}
     assert duty.fragment.missing[0].keys == ("impedances between HV and LV, tapping 'plus'",)
@@ -267,3 +280,83 @@ def test_units_of_the_file_do_not_matter(percent, power):
     duties = [duty_of(read_unit_text(t, "unit.toml")).windings["LV"].symmetrical for t in (one, other)]
     assert duties[0] == pytest.approx(duties[1], rel=1e-9)
     assert first.windings.keys() == {"HV", "LV"}
+
+
+BANK = """
+format = "throughfault-unit/1"
+standard = "IEC 60076-5:2006"
+[identity]
+tag = "BV-X2"
+title = "Brackwater Vale, a bank for tests"
+[rating]
+phases = {phases}
+frequency = "50 Hz"
+vector_group = "YNa0d11"
+immersion = "oil"
+core = "single-phase"
+bank = true
+[windings.HV]
+rated_power = "{power}"
+rated_voltage = "400 kV"
+[windings.LV]
+rated_power = "{power}"
+rated_voltage = "230 kV"
+[windings.TV]
+rated_power = "{power}"
+rated_voltage = "33 kV"
+stabilising = true
+{rows}
+[system.HV]
+short_circuit_power = "40000 MVA"
+x0_over_x1 = 1.0
+"""
+
+
+def bank(phases, power, more=""):
+    row = '[[impedances]]\nbetween = ["{}", "{}"]\ntapping = "principal"\nimpedance = "{} %"\nbase_power = "{}"\nresistance = "0.2 %"\n'
+    pairs = (("HV", "LV", 12), ("HV", "TV", 40), ("LV", "TV", 25))
+    rows = "".join(row.format(a, b, z, power) for a, b, z in pairs)
+    return read_unit_text(BANK.format(phases=phases, power=power, rows=rows) + more, "unit.toml")
+
+
+def test_a_bank_may_state_one_unit_or_the_whole():
+    """Powers of one unit with phases = 1 and of the bank with phases = 3 describe the same transformer."""
+    one, whole = duty_of(bank(1, "100 MVA")), duty_of(bank(3, "300 MVA"))
+    assert one.windings["HV"].symmetrical == pytest.approx(whole.windings["HV"].symmetrical, rel=1e-12)
+    assert one.category == whole.category == "III"
+
+
+def test_the_stabilising_winding_of_a_bank_is_faulted_at_its_terminals():
+    """Unless a reason is given why such a fault cannot occur."""
+    at = {entry["at"] for entry in duty_of(bank(3, "300 MVA")).entries}
+    assert at == {"HV", "LV", "TV"}
+    excluded = '[system.TV]\nterminal_fault_excluded = "phase-segregated and enclosed"\n'
+    assert {entry["at"] for entry in duty_of(bank(3, "300 MVA", excluded)).entries} == {"HV", "LV"}
+
+
+def test_series_and_common_winding_carry_their_own_currents():
+    """At a three-phase fault of the low-voltage terminal the common winding carries what the ratio leaves."""
+    entry = next(e for e in duty_of(bank(3, "300 MVA")).entries if e["id"] == "principal/LV/3ph/HV")
+    series, common = entry["currents"]["HV"]["a"]["rms"], entry["currents"]["LV"]["a"]["rms"]
+    assert common / series == pytest.approx((400 - 230) / 230, rel=1e-9)
+    assert entry["terminals"]["LV"]["a"]["rms"] == pytest.approx(series + common, rel=1e-9)
+
+
+def test_closed_form_table_and_exact_factor_stand_beside_the_deciding_one():
+    """Within the table all three are given, and they lie within a per cent."""
+    found = {o.id: o.value for o in duty_of(make(impedance='resistance = "2 %"')).fragment.quantities}
+    factors = [found[f"duty.HV.peak_factor{suffix}"] for suffix in ("", "_closed_form", "_exact", "_table")]
+    assert factors[0] == factors[3]
+    assert max(factors) / min(factors) < 1.01
+
+
+def test_apparatus_limits_are_replaced_by_a_signatory():
+    """A figure under [limits] decides, and the one of the unit file is kept beside it."""
+    more = '[bushings.LV]\nshort_time_current = "5 kA"\nduration = "1 s"\npeak_current = "20 kA"\n'
+    more += '[limits]\n"apparatus.bushings.LV.short_time_current" = { value = "6.5 kA", source = "type test report" }\n'
+    unit = make(more=more, system="x_over_r = 10.0")
+    checks = {check.id: check.entry() for check in duty_of(unit).fragment.checks}
+    replaced = checks["apparatus.bushings.LV.short_time_current"]
+    assert (replaced["limit"], replaced["limit_provenance"]) == (6.5, "signatory")
+    assert replaced["kit_limit"]["value"] == pytest.approx(5.0 / math.sqrt(2.0))
+    assert checks["apparatus.bushings.LV.peak_current"]["verdict"] == "within"

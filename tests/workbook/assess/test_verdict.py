@@ -17,7 +17,11 @@ def check(value, provenance="recalled", ability="thermal", name="thermal.HV.temp
 
 @pytest.mark.parametrize(
     ("value", "thermal", "overall"),
-    [(200.0, "withstands", "not assessed"), (300.0, "does not withstand", "does not withstand"), (None, "not assessed", "not assessed")],
+    [
+        (200.0, "withstands", "not assessed"),
+        (300.0, "does not withstand", "does not withstand"),
+        (None, "not assessed", "not assessed"),
+    ],
 )
 def test_dynamic_ability_needs_a_route(value, thermal, overall):
     """Without a route dynamic ability is not assessed, and the overall verdict is the worst."""
@@ -55,3 +59,12 @@ def test_a_limit_no_check_takes_is_told():
     assert [point.text for point in points] == [
         "limits.'thermal.HV.temprature': no check of this review takes this limit (did you mean 'thermal.HV.temperature'?)"
     ]
+
+
+def test_design_data_are_not_passed_over_in_silence():
+    """Where design data are given, the reason says that nothing is calculated from them."""
+    whole = (Path(__file__).parents[1] / "inputs" / "whole.toml").read_text(encoding="utf-8")
+    (missing,) = conclude(read_unit_text(whole), [check(200.0, "maker")]).fragment.missing
+    assert missing.reason == (
+        "design data are given, and this version of the kit does not calculate forces and strength from them"
+    )

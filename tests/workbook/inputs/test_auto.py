@@ -19,9 +19,7 @@ def auto():
 
 def test_common_winding_at_the_voltage_of_the_series_winding(auto):
     """An autotransformer needs a difference of voltages for its series winding."""
-    text = auto.replace('rated_voltage = "132 kV"', 'rated_voltage = "400 kV"').replace(
-        '"145 kV"', '"420 kV"'
-    )
+    text = auto.replace('rated_voltage = "132 kV"', 'rated_voltage = "400 kV"').replace('"145 kV"', '"420 kV"')
     assert refused(text) == [
         (
             "unit.toml: [line 31] windings.HV.rated_voltage: must be above that of 'LV', 400 kV, at tapping 'principal' of "
@@ -42,9 +40,7 @@ def test_neutral_under_the_common_winding(auto):
 
 def test_zero_sequence_of_an_autotransformer(auto):
     """The common winding shares the neutral, so the pair has a zero-sequence path."""
-    unit = read_unit_text(
-        auto.replace('load_loss = "520 kW"', 'load_loss = "520 kW"\nzero_sequence = "17 %"')
-    )
+    unit = read_unit_text(auto.replace('load_loss = "520 kW"', 'load_loss = "520 kW"\nzero_sequence = "17 %"'))
     assert unit.impedances[0].zero_sequence.to("%") == 17.0
     assert unit.earthing == {"HV": "solid"}
 

@@ -20,9 +20,7 @@ def test_an_example_reads(tag):
     assert "Brackwater Vale" in unit.identity.title
 
 
-@pytest.mark.parametrize(
-    ("tag", "usual"), [("BV-T1", (2.5, 3.5)), ("BV-T2", (2.5, 3.5)), ("BV-D7", (1.3, 2.0))]
-)
+@pytest.mark.parametrize(("tag", "usual"), [("BV-T1", (2.5, 3.5)), ("BV-T2", (2.5, 3.5)), ("BV-D7", (1.3, 2.0))])
 def test_rated_current_densities_are_usual(tag, usual):
     """Rated densities lie where oil-cooled windings have them (common practice)."""
     unit = read_unit(EXAMPLES / tag / "unit.toml")

@@ -39,11 +39,7 @@ def test_random_bytes(tmp_path, data):
 
 
 @settings(max_examples=150, deadline=None)
-@given(
-    edits=st.lists(
-        st.tuples(st.integers(0, len(WHOLE) - 1), st.characters(codec="utf-8")), min_size=1, max_size=4
-    )
-)
+@given(edits=st.lists(st.tuples(st.integers(0, len(WHOLE) - 1), st.characters(codec="utf-8")), min_size=1, max_size=4))
 def test_random_characters(edits):
     """Some characters exchanged give a unit or a report."""
     text = WHOLE
@@ -53,9 +49,7 @@ def test_random_characters(edits):
 
 
 @settings(max_examples=200, deadline=None)
-@given(
-    edits=st.lists(st.tuples(st.integers(0, len(LINES) - 1), st.sampled_from(ODD)), min_size=1, max_size=5)
-)
+@given(edits=st.lists(st.tuples(st.integers(0, len(LINES) - 1), st.sampled_from(ODD)), min_size=1, max_size=5))
 def test_odd_values(edits):
     """Odd values in any place give a unit or a report."""
     lines = list(LINES)

@@ -5,9 +5,7 @@ import pytest
 CASES = {
     "unknown key": (
         [('rated_voltage = "132 kV"\n', 'rated_voltage = "132 kV"\nconductor_secton = "62 mm^2"\n')],
-        [
-            "unit.toml: [line 28] windings.HV.conductor_secton: is not a known key (did you mean 'conductor_section'?)."
-        ],
+        ["unit.toml: [line 28] windings.HV.conductor_secton: is not a known key (did you mean 'conductor_section'?)."],
     ),
     "unknown table": (
         [("[tap_changer]", "[tapchanger]")],
@@ -27,9 +25,7 @@ CASES = {
     ),
     "missing word": (
         [('immersion = "oil"\n', "")],
-        [
-            'unit.toml: [line 12] rating.immersion: is missing; it must be one of "oil", "dry"; source: rating plate.'
-        ],
+        ['unit.toml: [line 12] rating.immersion: is missing; it must be one of "oil", "dry"; source: rating plate.'],
     ),
     "missing unit": (
         [('rated_voltage = "132 kV"', 'rated_voltage = "132"')],
@@ -344,9 +340,7 @@ CASES = {
     ),
     "misspelt prefault voltage": (
         [("prefault_voltage = { minus = 1.1 }", "prefalt_voltage = 1.1")],
-        [
-            "unit.toml: [line 82] system.prefalt_voltage: is not a known key (did you mean 'prefault_voltage'?)."
-        ],
+        ["unit.toml: [line 82] system.prefalt_voltage: is not a known key (did you mean 'prefault_voltage'?)."],
     ),
     "misspelt table of prefault voltages": (
         [("prefault_voltage = { minus = 1.1 }", "prefalt_voltage = { minus = 1.1 }")],
@@ -447,9 +441,7 @@ CASES = {
     ),
     "result id that is none": (
         [('"duty.LV.peak" = "8.0 kA"', 'peak = "8.0 kA"')],
-        [
-            "unit.toml: [line 200] declared.peak: its name must be a result id such as \"duty.LV.peak\", got 'peak'."
-        ],
+        ["unit.toml: [line 200] declared.peak: its name must be a result id such as \"duty.LV.peak\", got 'peak'."],
     ),
     "vector group that is none": (
         [('"YNd11"', '"YNx11"')],

@@ -143,6 +143,4 @@ def test_a_winding_without_a_coil(whole):
 def test_further_warnings(whole):
     """Other layers add what they find, after the inputs' own."""
     point = OpenPoint("z.minimum", "Impedance of {tag} is low.".replace("{tag}", "T1"))
-    assert read_unit_text(whole, extra_warnings=[lambda unit: [point] if unit.design else []]).warnings == (
-        point,
-    )
+    assert read_unit_text(whole, extra_warnings=[lambda unit: [point] if unit.design else []]).warnings == (point,)

@@ -62,9 +62,7 @@ def test_deep_tables_are_unknown_keys(tmp_path):
 
 def test_a_missing_file(tmp_path):
     """A file that is not there is bad input, and its folder is not told."""
-    with pytest.raises(
-        UnitFileError, match=re.escape("unit.toml: cannot be read: No such file or directory.")
-    ):
+    with pytest.raises(UnitFileError, match=re.escape("unit.toml: cannot be read: No such file or directory.")):
         read_unit(tmp_path / "unit.toml")
 
 
@@ -127,9 +125,7 @@ def test_all_faults_at_once(refused):
 
 def test_a_refused_value_causes_no_second_fault(refused):
     """A value that was refused takes part in no comparison."""
-    assert refused(
-        ('rated_voltage = "132 kV"', 'rated_voltage = "132 kA"'), ("turns = 402", 'turns = "many"')
-    ) == [
+    assert refused(('rated_voltage = "132 kV"', 'rated_voltage = "132 kA"'), ("turns = 402", 'turns = "many"')) == [
         (
             'unit.toml: [line 27] windings.HV.rated_voltage: must be a voltage such as "1 kV" (unit one of V, kV), '
             "got '132 kA', which is of kind current; source: rating plate."

@@ -25,9 +25,7 @@ def validator():
 @pytest.mark.parametrize("tag", EXAMPLES)
 def test_the_examples_satisfy_it(validator, tag):
     """The example reviews satisfy the schema."""
-    validator.validate(
-        tomllib.loads((ROOT / "example_reviews" / tag / "unit.toml").read_text(encoding="utf-8"))
-    )
+    validator.validate(tomllib.loads((ROOT / "example_reviews" / tag / "unit.toml").read_text(encoding="utf-8")))
 
 
 @pytest.mark.parametrize("kind", KINDS_OF_UNIT)

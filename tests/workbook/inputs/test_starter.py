@@ -26,9 +26,7 @@ def test_a_starter_teaches(kind):
     for line in lines:
         (tail if line.startswith(("[", '"')) or tail else head).append(line)
     assert tail
-    text = text.replace(
-        "vector_group", "\n".join(line for line in head if line.startswith("self")) + "vector_group", 1
-    )
+    text = text.replace("vector_group", "\n".join(line for line in head if line.startswith("self")) + "vector_group", 1)
     read_unit_text(text + "\n" + "\n".join(tail))
 
 

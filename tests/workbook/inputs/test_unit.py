@@ -180,9 +180,7 @@ short_circuit_power = "table"
 [earthing]
 LV = "isolated"
 """
-THREE = THREE.replace(
-    'rated_voltage = "230 kV", t', 'rated_voltage = "230 kV", highest_voltage = "245 kV", t'
-)
+THREE = THREE.replace('rated_voltage = "230 kV", t', 'rated_voltage = "230 kV", highest_voltage = "245 kV", t')
 
 
 def test_defaults_are_named():
@@ -284,9 +282,7 @@ def in_si(unit):
         elif hasattr(type(value), "model_fields"):
             [walk(getattr(value, name)) for name in type(value).model_fields]
 
-    walk(
-        (unit.rating, unit.windings, unit.impedances, unit.system, unit.earthing, unit.design, unit.declared)
-    )
+    walk((unit.rating, unit.windings, unit.impedances, unit.system, unit.earthing, unit.design, unit.declared))
     return found
 
 
@@ -348,13 +344,8 @@ def test_section_from_the_strands(change):
 
 def test_section_unknown(whole, change):
     """Without discs, or without a design, the section stays unknown."""
-    assert (
-        conductor_section(change(('conductor_section = "62 mm^2"\n', ""), (", discs = 12", "")), "HV") is None
-    )
-    assert (
-        conductor_section(read_unit_text(bare(whole).replace('conductor_section = "62 mm^2"\n', "")), "HV")
-        is None
-    )
+    assert conductor_section(change(('conductor_section = "62 mm^2"\n', ""), (", discs = 12", "")), "HV") is None
+    assert conductor_section(read_unit_text(bare(whole).replace('conductor_section = "62 mm^2"\n', "")), "HV") is None
 
 
 def test_section_of_a_transposed_cable(change):

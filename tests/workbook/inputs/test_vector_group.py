@@ -79,8 +79,7 @@ def test_symbols_refused(symbol):
 def test_kinds_of_group():
     """Autotransformers and single-phase units are told from their letters."""
     assert [
-        (parse_vector_group(s).auto, parse_vector_group(s).single_phase)
-        for s in ("YNa0", "Ia0", "Ii0", "Dyn11")
+        (parse_vector_group(s).auto, parse_vector_group(s).single_phase) for s in ("YNa0", "Ia0", "Ii0", "Dyn11")
     ] == [
         (True, False),
         (True, True),

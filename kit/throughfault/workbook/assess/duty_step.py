@@ -8,7 +8,12 @@ from dataclasses import dataclass
 from typing import Any
 
 from throughfault.cells import fault_current as cells
-from throughfault.cells.peak_factor import peak_factor_closed_form, peak_factor_exact, peak_short_circuit_current
+from throughfault.cells.peak_factor import (
+    peak_factor_closed_form,
+    peak_factor_exact,
+    peak_factor_from_table,
+    peak_short_circuit_current,
+)
 from throughfault.declare import Cell, Outcome, Step
 from throughfault.errors import OutsideValidity
 from throughfault.quantities import Quantity
@@ -19,6 +24,7 @@ from throughfault.workbook.assess.rules import PeakFactor
 __all__ = ["CaseFacts", "closed_form_steps", "factor_outcomes", "peak_steps"]
 
 
+LEAST_TABLED, GREATEST_TABLED = 1.0, 14.0  # X/R of the table's ends
 FACTOR_CELLS = {
     "table, interpolated": "peak_factor_from_table",
     "exact first maximum": "peak_factor_exact",
@@ -102,7 +108,10 @@ def factor_outcomes(name: str, case: FaultCase, facts: CaseFacts) -> Iterator[Ou
     )
     if facts.x_over_r == math.inf or facts.x_over_r <= 0.0:
         return
-    for suffix, cell in (("closed_form", peak_factor_closed_form), ("exact", peak_factor_exact)):
+    beside: dict[str, Any] = {"closed_form": peak_factor_closed_form, "exact": peak_factor_exact}
+    if LEAST_TABLED <= facts.x_over_r <= GREATEST_TABLED:
+        beside["table"] = peak_factor_from_table
+    for suffix, cell in beside.items():
         value, source = float(cell(facts.x_over_r)), cell.source
         yield Outcome(f"{head}_{suffix}", value, "1", symbol, cell.name, source.citation, source.provenance, case.name)
 

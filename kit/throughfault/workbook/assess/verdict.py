@@ -16,6 +16,8 @@ NO_ROUTE = "none complete"
 ROUTE_ID = "dynamic.route"
 ROUTE_REASON = "no route is complete: neither a special test, nor a calculation, nor a similar tested unit is in hand"
 
+DESIGN_REASON = "design data are given, and this version of the kit does not calculate forces and strength from them"
+
 
 @dataclass(frozen=True)
 class Conclusion:
@@ -46,9 +48,9 @@ class Conclusion:
 
 def route_check(unit: Unit) -> tuple[Check, Missing]:
     """Return the check that dynamic ability needs a route, and what would supply one."""
-    keys = ("design",) if unit.design is None else ("design (forces and strength)",)
-    check = Check(ROUTE_ID, None, "1", None, "dynamic", reason=ROUTE_REASON)
-    return check, Missing(ROUTE_ID, keys, ROUTE_REASON)
+    keys, reason = (("design",), ROUTE_REASON) if unit.design is None else ((), DESIGN_REASON)
+    check = Check(ROUTE_ID, None, "1", None, "dynamic", reason=reason)
+    return check, Missing(ROUTE_ID, keys, reason)
 
 
 def conclude(unit: Unit, checks: Sequence[Check]) -> Conclusion:

@@ -74,7 +74,9 @@ class Identity(Section):
 class Rating(Section):
     """The unit as a whole."""
 
-    phases: Annotated[Literal[1, 3], OneOf((1, 3))] = key("Phases of the unit; 1 for each unit of a bank.", PLATE)
+    phases: Annotated[Literal[1, 3], OneOf((1, 3))] = key(
+        "Phases of the unit. In a bank: 1 where powers are one unit's, 3 where they are the bank's.", PLATE
+    )
     frequency: Frequency = key("Rated frequency.", PLATE)
     vector_group: Annotated[str, VectorGroupSymbol()] = key(
         "Vector group (IEC 60076-1), high voltage first; that of the bank for a bank.", PLATE

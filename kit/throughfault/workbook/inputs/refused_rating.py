@@ -24,9 +24,7 @@ def letters_and_windings(file: UnitFile) -> Iterator[Fault]:
 def phases_and_letters(file: UnitFile) -> Iterator[Fault]:
     """Compare phases, bank and letters."""
     phases, bank, single = file.rating.phases, file.rating.bank, file.group.single_phase
-    if bank and phases != 1:
-        yield Fault(("rating", "bank"), "is true for single-phase units only, but rating.phases is 3.")
-    elif single and (phases == 3 or bank):
+    if single and (phases == 3 or bank):
         whose = "a bank" if bank else "a three-phase unit"
         yield Fault(("rating", "vector_group"), f"has the letter I of a single-phase unit, but this is {whose}.")
     elif not single and phases == 1 and not bank:
@@ -36,11 +34,12 @@ def phases_and_letters(file: UnitFile) -> Iterator[Fault]:
 
 def core_and_phases(file: UnitFile) -> Iterator[Fault]:
     """Compare the core with the phases."""
-    phases, core = file.rating.phases, file.rating.core
-    if phases == 3 and core == "single-phase":
+    phases, core, bank = file.rating.phases, file.rating.core, file.rating.bank
+    if phases == 3 and core == "single-phase" and not bank:
         yield Fault(("rating", "core"), 'is "single-phase", but rating.phases is 3.')
-    if phases == 1 and core in {"three-limb", "five-limb"}:
-        text = f'is "{core}", which is a three-phase core, but rating.phases is 1; write "single-phase" or "shell".'
+    if (phases == 1 or bank) and core in {"three-limb", "five-limb"}:
+        why = "rating.bank is true" if bank else "rating.phases is 1"
+        text = f'is "{core}", which is a three-phase core, but {why}; write "single-phase" or "shell".'
         yield Fault(("rating", "core"), text)
 
 

@@ -2,12 +2,18 @@
 
 from __future__ import annotations
 
+import math
 from collections.abc import Iterator
+from itertools import combinations
+
+import numpy as np
+from numpy.typing import NDArray
 
 from throughfault.workbook.inputs.impedances import ImpedanceRow
 from throughfault.workbook.inputs.messages import Fault, unknown_name
 from throughfault.workbook.inputs.model import UnitFile
 from throughfault.workbook.inputs.vector_group import WindingConnection
+from throughfault.workbook.inputs.windings import PRINCIPAL
 
 ROUNDING = 0.02  # relative difference of resistance and load loss that rounding explains
 SMALLEST_DIFFERENCE = 0.01  # percentage points
@@ -114,7 +120,37 @@ def magnetising_winding(file: UnitFile) -> Iterator[Fault]:
         yield Fault(path, text)
 
 
-TABLE_CHECKS = (repeated_rows, magnetising_winding)
+def passive_pairs(file: UnitFile) -> Iterator[Fault]:
+    """See that some set of coils can have the reactances of all pairs: no current may store negative energy."""
+    names = list(file.windings)
+    if len(names) < 3:
+        return
+    for tapping in file.tapping_names:
+        reactances = _reactances(file, names, tapping)
+        if reactances is None:
+            continue
+        last = reactances[:-1, -1]
+        energy = 0.5 * (last[:, None] + last[None, :] - reactances[:-1, :-1])
+        if np.linalg.eigvalsh(energy)[0] <= 0.0:
+            text = f"contradict each other at tapping '{tapping}': no windings can have these impedances between pairs."
+            yield Fault(("impedances",), text)
+
+
+def _reactances(file: UnitFile, names: list[str], tapping: str) -> NDArray[np.float64] | None:
+    """Return pairwise reactances on one base, [winding, winding]; None where a row is missing."""
+    rows = {(frozenset(row.between), row.tapping): row for row in file.impedances}
+    found = np.zeros((len(names), len(names)))
+    for i, j in combinations(range(len(names)), 2):
+        pair = frozenset((names[i], names[j]))
+        row = rows.get((pair, tapping)) or rows.get((pair, PRINCIPAL))
+        if row is None:
+            return None
+        size = math.sqrt(max(row.impedance.to("p.u.") ** 2 - row.resistance_value.to("p.u.") ** 2, 0.0))
+        found[i, j] = found[j, i] = size / row.base_power.to("MVA")
+    return found
+
+
+TABLE_CHECKS = (repeated_rows, magnetising_winding, passive_pairs)
 ROW_CHECKS = (
     known_windings,
     known_tapping,
