@@ -3,6 +3,7 @@
 import contextlib
 import math
 
+import pint
 import pytest
 from hypothesis import given
 from hypothesis import strategies as st
@@ -100,6 +101,16 @@ def test_no_text_does_more_than_fail(text):
     """Whatever the text, it is read as a quantity or refused."""
     with contextlib.suppress(QuantityError):
         assert math.isfinite(parse(text, "V").to("V"))
+
+
+def test_definitions_are_those_of_the_library():
+    """Every unit of the kit's short list is the unit of that name in the library's own catalogue."""
+    catalogue = pint.UnitRegistry(autoconvert_offset_to_baseunit=True)
+    for units in KINDS.values():
+        for source in units:
+            for target in units:
+                there = catalogue.Quantity(1.7, UNITS[source][1]).to(UNITS[target][1]).magnitude
+                assert convert(1.7, source, target) == pytest.approx(there, rel=1e-14)
 
 
 def test_text_of_a_quantity_reads_back():

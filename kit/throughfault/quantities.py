@@ -21,7 +21,40 @@ __all__ = ["KINDS", "UNITS", "Quantity", "convert", "expectation", "parse", "par
 
 LONGEST_TEXT = 64
 
-_registry: pint.UnitRegistry[float] = pint.UnitRegistry(autoconvert_offset_to_baseunit=True)
+#: what the listed units are made of; the library's own catalogue of a thousand units takes longer to read than a review
+_DEFINITIONS = """
+micro- = 1e-6
+milli- = 1e-3
+centi- = 1e-2
+kilo- = 1e3
+mega- = 1e6
+giga- = 1e9
+meter = [length]
+second = [time]
+ampere = [current]
+gram = [mass]
+kelvin = [temperature]; offset: 0
+radian = []
+degree = 3.141592653589793 / 180 * radian
+percent = 0.01
+degree_Celsius = kelvin; offset: 273.15
+minute = 60 * second
+hour = 3600 * second
+hertz = 1 / second
+newton = kilogram * meter / second ** 2
+pascal = newton / meter ** 2
+joule = newton * meter
+watt = joule / second
+volt = watt / ampere
+ohm = volt / ampere
+tesla = volt * second / meter ** 2
+metric_ton = 1000 * kilogram
+"""
+
+_registry: pint.UnitRegistry[float] = pint.UnitRegistry(None, autoconvert_offset_to_baseunit=True)
+for _line in _DEFINITIONS.split("\n"):
+    if _line:
+        _registry.define(_line)
 
 #: unit text -> (kind, unit as the registry names it)
 UNITS: dict[str, tuple[str, str]] = {

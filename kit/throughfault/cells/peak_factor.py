@@ -8,7 +8,6 @@ from typing import Annotated, Any
 
 import numpy as np
 from numpy.typing import ArrayLike
-from scipy.optimize import minimize_scalar
 
 from throughfault import nomenclature as nom
 from throughfault.declare import Equation, Range, algorithm, cell
@@ -39,6 +38,8 @@ def peak_factor_closed_form(x_over_r: Annotated[float, nom.x_over_r]) -> Annotat
 
 def _first_crest(x_over_r: float) -> tuple[float, float]:
     """Return phase and height of the first crest by search, without the equation that the solver uses."""
+    from scipy.optimize import minimize_scalar  # noqa: PLC0415 - slow to import, and needed by the comparison only
+
     phi = atan(x_over_r)
 
     def below(theta: float) -> float:

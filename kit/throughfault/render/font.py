@@ -19,12 +19,14 @@ from importlib.util import find_spec
 from io import BytesIO
 from pathlib import Path
 from tempfile import NamedTemporaryFile
+from typing import TYPE_CHECKING
 
-from fontTools.subset import Options, Subsetter
-from fontTools.ttLib import TTFont
 from platformdirs import user_cache_path
 
 from throughfault.errors import DeclarationError
+
+if TYPE_CHECKING:
+    from fontTools.ttLib import TTFont
 
 __all__ = ["FAMILY", "code_points", "font_face", "subset"]
 
@@ -93,6 +95,9 @@ def _even_roots(font: TTFont) -> None:
 
 
 def _make(font: bytes, points: Iterable[int]) -> bytes:
+    from fontTools.subset import Options, Subsetter  # noqa: PLC0415 - slow to import, and a cached subset needs none
+    from fontTools.ttLib import TTFont  # noqa: PLC0415
+
     options = Options(
         flavor="woff", layout_features=["*"], hinting=False, notdef_outline=True, name_IDs=[], desubroutinize=True,
         recalc_timestamp=False, drop_tables=["DSIG", "meta", "SVG "], glyph_names=False,
