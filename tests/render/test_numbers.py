@@ -68,7 +68,7 @@ def test_five_digits_tell_the_number(value):
 
 def test_a_column_has_one_count_of_decimals():
     """Decimal points stand below each other; what is absent stays empty."""
-    assert column_text([13.921, 5.03, None, -0.4124, 1e-17]) == ["13.92", "5.03", "", "−0.41", "0.00"]
+    assert column_text([13.921, 5.03, None, -0.4124, 1e-17]) == ["13.921", "5.030", "", "−0.412", "0.000"]
     assert column_text([2.5e8, 1.0]) == ["2.5×10⁸", "1"]
     assert column_text([None, 0.0]) == ["", "0.000"]
 

@@ -95,7 +95,8 @@ def formula_block(steps: Step | Sequence[Step], heading: Text | None = None, anc
         '<p class="source">{gives}. {source}</p>{formula}{work}</section>\n'
     ).format(
         id=f"{anchor}-{slug(runs[0].id)}", title=label(cell.title) if heading is None else heading,
-        source=clause(cell.source.citation, cell.source.provenance), gives=label(sentence(cell.result.description)),
+        source=clause(cell.source.citation, cell.source.provenance),
+        gives=label(sentence(cell.result.description.rstrip("."))),
         formula=_lines(formula_lines(cell), "equation"),
         work=joined(
             Markup('<div class="work"><div>{}</div>{}</div>').format(joined(map(_worked, chunk)), _arguments(chunk))

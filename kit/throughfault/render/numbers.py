@@ -27,6 +27,8 @@ __all__ = [
 ]
 
 DIGITS = 5
+SMALL_DIGITS = 3
+NEGLIGIBLE = 1e-4
 COLUMN_DIGITS = 4
 SMALLEST_PLAIN = 1e-4
 LARGEST_PLAIN = 1e7
@@ -85,8 +87,15 @@ def _largest_power(values: Sequence[float | None]) -> int:
 
 
 def decimals_of(values: Sequence[float | None], digits: int = COLUMN_DIGITS) -> int:
-    """Return the decimals with which the largest of the values keeps `digits` significant digits."""
-    return max(0, digits - 1 - _largest_power(values))
+    """Return the decimals with which the largest keeps `digits` significant digits and small ones at least three.
+
+    Values below a ten-thousandth of the largest count as nothing.
+    """
+    largest = _largest_power(values)
+    sizes = [abs(v) for v in values if v]
+    counted = [size for size in sizes if size > NEGLIGIBLE * max(sizes)]
+    least = SMALL_DIGITS - 1 - _largest_power([min(counted)]) if counted else 0
+    return max(0, digits - 1 - largest, least)
 
 
 def column_text(values: Sequence[float | None], digits: int = COLUMN_DIGITS) -> list[str]:

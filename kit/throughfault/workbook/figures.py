@@ -2,6 +2,9 @@
 
 from __future__ import annotations
 
+from collections.abc import Mapping
+from typing import Any
+
 from markupsafe import Markup
 
 from throughfault.render.html import clause, identity
@@ -27,8 +30,14 @@ def duty_figures(duty: Duty) -> list[Markup]:
     if duty.entries:
         caption = Markup("First peak of each winding by kind and place of the fault, tapping and infeed.")
         alternative = "Dots for every fault case, one panel for each winding; the governing case is ringed."
-        figures.append(figure_html(duty_by_case(duty.entries), "figure-duty", caption, alternative))
+        flowing = [entry for entry in duty.entries if _flows(entry)]
+        figures.append(figure_html(duty_by_case(flowing), "figure-duty", caption, alternative))
     return figures
+
+
+def _flows(entry: Mapping[str, Any]) -> bool:
+    """Tell whether the transformer carries any current: a fault may be fed past it."""
+    return any(phase["rms"] for phases in entry["currents"].values() for phase in phases.values())
 
 
 def _wave(duty: Duty, name: str) -> Markup:

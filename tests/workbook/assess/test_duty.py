@@ -8,6 +8,7 @@ import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
 
+from throughfault.cells.peak_factor import peak_factor_from_table
 from throughfault.numerics.network import solve
 from throughfault.workbook.assess.duty import assess_duty
 from throughfault.workbook.assess.fault_case import fault_cases
@@ -267,6 +268,18 @@ def test_direct_current_resistance_governs_the_offset_only():
     plain, direct = (duty_of(make(impedance=f'resistance = "2 %"\n{more}')) for more in ("", 'dc_resistance = "1 %"'))
     assert direct.windings["HV"].symmetrical == pytest.approx(plain.windings["HV"].symmetrical, rel=1e-12)
     assert direct.windings["HV"].peak > plain.windings["HV"].peak
+
+
+@pytest.mark.parametrize("more", ["", 'dc_resistance = "1 %"'])
+def test_worked_ratio_is_the_one_the_factor_was_taken_for(more):
+    """X/R on the page, the factor beside it and the driving-point impedance of the case are of one piece."""
+    duty = duty_of(make(impedance=f'resistance = "2 %"\n{more}'))
+    step = next(s for s in duty.fragment.steps if s.id == "duty.HV.x_over_r")
+    entry = next(e for e in duty.entries if e["id"] == duty.windings["HV"].peak_case)
+    driving = entry["driving_point"]
+    assert step.result.value == pytest.approx(driving["reactance"] / driving["resistance"], rel=1e-9)
+    found = {o.id: o.value for o in duty.fragment.quantities}
+    assert found["duty.HV.peak_factor_table"] == pytest.approx(peak_factor_from_table(step.result.value), rel=1e-12)
 
 
 @settings(max_examples=15, deadline=None)

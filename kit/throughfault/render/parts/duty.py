@@ -34,8 +34,15 @@ def _of_terminal(id_: str) -> tuple[str, str] | None:
     return (f"{name} terminal", measure.removeprefix("terminal_")) if first == "duty" and measure in _TERMINAL else None
 
 
+def _of_factor(id_: str) -> tuple[str, str] | None:
+    first, _, rest = id_.partition(".")
+    name, _, measure = rest.rpartition(".")
+    return (name, measure) if first == "duty" and measure.startswith("peak_factor") else None
+
+
 def _further(quantities: Mapping[str, Entry]) -> dict[str, Entry]:
-    return {id_: entry for id_, entry in quantities.items() if _of_winding(id_) is None and _of_terminal(id_) is None}
+    places = (_of_winding, _of_terminal, _of_factor)
+    return {id_: entry for id_, entry in quantities.items() if all(place(id_) is None for place in places)}
 
 
 def _phases(case: Entry, kind: str, name: str) -> Iterable[tuple[str, Entry]]:
@@ -133,6 +140,7 @@ def duty_part(
     governing = joined([
         result_matrix(title, "Winding", quantities, _of_winding, "peak"),
         result_matrix("At the line terminals", "Terminal", quantities, _of_terminal, "peak"),
+        result_matrix("Peak factor that decides, and others", "Winding", quantities, _of_factor, "peak_factor"),
         result_list("Neutrals and further currents", _further(quantities)),
         reasons(quantities), origins(quantities),
     ])  # fmt: skip

@@ -14,7 +14,7 @@ from throughfault.numerics.case import Floats
 from throughfault.quantities import Quantity
 from throughfault.workbook.assess.apparatus import apparatus_checks
 from throughfault.workbook.assess.duty_entry import Largest, WindingDuty, case_entry, duty_outcomes
-from throughfault.workbook.assess.duty_step import CaseFacts, closed_form_steps, factor_outcomes, peak_steps
+from throughfault.workbook.assess.duty_step import CaseFacts, closed_form_steps, factor_outcomes, fault_steps, peak_step
 from throughfault.workbook.assess.fault_case import FaultCase, fault_cases
 from throughfault.workbook.assess.fault_network import NetworkData
 from throughfault.workbook.assess.fault_solution import Solved, ratio_of, solve_cases
@@ -121,12 +121,16 @@ def _worked(solved: Solved, duty: Duty) -> tuple[list[Step], list[Outcome]]:
     number = {case.name: n for n, case in enumerate(solved.cases)}
     steps: list[Step] = []
     outcomes: list[Outcome] = []
+    shown: set[str] = set()
     for name, winding in duty.windings.items():
         if winding.peak_case is None:
             continue
         at = number[winding.peak_case]
         case, facts = solved.cases[at], _facts(solved, at)
-        steps += peak_steps(name, case, facts)
+        if case.name not in shown:  # windings that one case governs share its lines
+            steps += fault_steps(name, case, facts)
+        steps += peak_step(name, facts)
+        shown.add(case.name)
         outcomes += factor_outcomes(name, case, facts)
     return steps, outcomes
 
@@ -135,9 +139,17 @@ def _facts(solved: Solved, number: int) -> CaseFacts:
     unit, case = solved.unit, solved.cases[number]
     rms = np.abs(solved.currents("winding")[number]).max(axis=1)
     voltage = unit.voltage(case.at, case.tapping).to("kV") * unit.prefault_voltage(case.tapping)
-    z1, z0 = complex(solved.solution.z1[number]), complex(solved.solution.z0[number])
-    largest = {name: float(value) for name, value in zip(unit.windings, rms, strict=True)}
-    return CaseFacts(solved.factors[number], ratio_of(solved.driving[number]), z1, z0, voltage, largest)
+    steady, decay = solved.solution, solved.decay
+    return CaseFacts(
+        factor=solved.factors[number],
+        x_over_r=ratio_of(complex(solved.driving[number])),
+        z1=complex(steady.z1[number]),
+        z0=complex(steady.z0[number]),
+        decay_z1=complex(decay.z1[number]),
+        decay_z0=complex(decay.z0[number]),
+        fault_voltage=voltage,
+        largest={name: float(value) for name, value in zip(unit.windings, rms, strict=True)},
+    )
 
 
 def _largest(solved: Solved, kind: str, name: str) -> WindingDuty:

@@ -21,7 +21,7 @@ from throughfault.workbook.assess.fault_case import FaultCase, source_power, sou
 from throughfault.workbook.assess.fault_network import NetworkData
 from throughfault.workbook.assess.rules import PeakFactor
 
-__all__ = ["CaseFacts", "closed_form_steps", "factor_outcomes", "peak_steps"]
+__all__ = ["CaseFacts", "closed_form_steps", "factor_outcomes", "fault_steps", "peak_step"]
 
 
 LEAST_TABLED, GREATEST_TABLED = 1.0, 14.0  # X/R of the table's ends
@@ -36,13 +36,16 @@ FACTOR_CELLS = {
 class CaseFacts:
     """What the worked lines of one case need.
 
-    Impedances at the fault in ohm, the voltage in kV, the largest current of each winding in kA.
+    Impedances at the fault in ohm (with a.c. resistances, and with those that let the offset decay), the voltage in
+    kV, the largest current of each winding in kA.
     """
 
     factor: PeakFactor
     x_over_r: float
     z1: complex
     z0: complex
+    decay_z1: complex
+    decay_z0: complex
     fault_voltage: float
     largest: Mapping[str, float]
 
@@ -51,33 +54,42 @@ def _ohm(value: float) -> Quantity:
     return Quantity(value, "ohm")
 
 
-def _sequence(facts: CaseFacts, *, zero: bool) -> dict[str, Quantity]:
-    given = {"resistance_1": _ohm(facts.z1.real), "reactance_1": _ohm(facts.z1.imag)}
-    if zero:
-        given |= {"resistance_0": _ohm(facts.z0.real), "reactance_0": _ohm(facts.z0.imag)}
+def _sequence(z1: complex, z0: complex | None) -> dict[str, Quantity]:
+    given = {"resistance_1": _ohm(z1.real), "reactance_1": _ohm(z1.imag)}
+    if z0 is not None:
+        given |= {"resistance_0": _ohm(z0.real), "reactance_0": _ohm(z0.imag)}
     return given
 
 
-def peak_steps(name: str, case: FaultCase, facts: CaseFacts) -> Iterator[Step]:
-    """Yield X/R, fault current and peak of the case that governs a winding's peak.
+RATIO_CELLS: dict[str, Cell[Any]] = {
+    "LG": cells.x_over_r_line_to_earth,
+    "LLG": cells.x_over_r_double_line_to_earth,
+}
+CURRENT_CELLS: dict[str, Cell[Any]] = {
+    "LG": cells.line_to_earth_current,
+    "LL": cells.line_to_line_current,
+    "LLG": cells.double_line_to_earth_current,
+}
+
+
+def fault_steps(name: str, case: FaultCase, facts: CaseFacts) -> Iterator[Step]:
+    """Yield X/R and current of the fault in the case that governs a winding's peak.
 
     A line is left out where its formula does not hold (no resistance, no zero-sequence path).
     """
-    ratios: dict[str, Cell[Any]] = {"LG": cells.x_over_r_line_to_earth, "LLG": cells.x_over_r_double_line_to_earth}
-    currents: dict[str, Cell[Any]] = {
-        "LG": cells.line_to_earth_current,
-        "LL": cells.line_to_line_current,
-        "LLG": cells.double_line_to_earth_current,
-    }
-    zero = case.fault in ratios
-    voltage = Quantity(facts.fault_voltage, "kV")
-    given = _sequence(facts, zero=zero)
-    yield from _where_valid(
-        lambda: ratios.get(case.fault, cells.x_over_r_line_to_line).step(f"duty.{name}.x_over_r", **given)
-    )
-    if case.fault in currents:
-        fault = currents[case.fault]
-        yield from _where_valid(lambda: fault.step(f"duty.{name}.fault_current", fault_voltage=voltage, **given))
+    earth = case.fault in RATIO_CELLS
+    ratio = RATIO_CELLS.get(case.fault, cells.x_over_r_line_to_line)
+    decaying = _sequence(facts.decay_z1, facts.decay_z0 if earth else None)
+    yield from _where_valid(lambda: ratio.step(f"duty.{name}.x_over_r", **decaying))
+    if case.fault in CURRENT_CELLS:
+        current = CURRENT_CELLS[case.fault]
+        steady = _sequence(facts.z1, facts.z0 if earth else None)
+        voltage = Quantity(facts.fault_voltage, "kV")
+        yield from _where_valid(lambda: current.step(f"duty.{name}.fault_current", fault_voltage=voltage, **steady))
+
+
+def peak_step(name: str, facts: CaseFacts) -> Iterator[Step]:
+    """Yield the peak of a winding in the case that governs it."""
     if facts.factor.value is not None:
         current, factor = Quantity(facts.largest[name], "kA"), Quantity(facts.factor.value, "1")
         yield peak_short_circuit_current.step(f"duty.{name}.peak", symmetrical_current=current, peak_factor=factor)

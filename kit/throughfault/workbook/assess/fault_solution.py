@@ -3,13 +3,13 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import Any
 
 import numpy as np
 
 from throughfault.declare import Missing
-from throughfault.numerics.case import Floats
+from throughfault.numerics.case import Complexes, Floats
 from throughfault.numerics.connection import Transformer
 from throughfault.numerics.network import Solution, solve
 from throughfault.numerics.transient import Transient, peak_exact, transient
@@ -33,9 +33,14 @@ class Solved:
     cases: tuple[FaultCase, ...]
     factors: tuple[PeakFactor, ...]
     solution: Solution
-    driving: Any
+    decay: Solution
     wave: Transient
     exact: dict[str, Floats]
+
+    @property
+    def driving(self) -> Complexes:
+        """Driving-point impedance of every case, ohm, with the resistances that let the offset decay."""
+        return self.decay.driving_point
 
     @property
     def factor(self) -> Floats:
@@ -65,30 +70,25 @@ def solve_cases(data: NetworkData, wanted: Sequence[FaultCase]) -> tuple[Solved 
     kept = [c for c in with_path if c.fault not in EARTH_FAULTS or earth_fault_obstacle(data.unit, c.at) is None]
     if not kept:
         return None, missing
-    arrays = build_cases(data, transformer, kept)
-    decaying = _with_direct_current(data)
-    solution = solve(transformer, arrays)
-    driving = (
-        solution.driving_point
-        if decaying is data
-        else solve(transformer, build_cases(decaying, transformer, kept)).driving_point
-    )
-    wave = transient(transformer, arrays if decaying is data else build_cases(decaying, transformer, kept))
+    return _solved(data, transformer, kept), missing
+
+
+def _solved(data: NetworkData, transformer: Transformer, cases: list[FaultCase]) -> Solved:
+    """Solve with a.c. resistances for the steady state, and with d.c. ones, where given, for what decays."""
+    steady = decaying = build_cases(data, transformer, cases)
+    solution = decay = solve(transformer, steady)
+    if any(row.dc_resistance is not None for row in data.unit.impedances):
+        decaying = build_cases(replace(data, direct_current=True), transformer, cases)
+        decay = solve(transformer, decaying)
+    wave = transient(transformer, decaying)
     peaks = peak_exact(wave)
     exact = {
         "winding": _of_windings(transformer, peaks.coil),
         "terminal": peaks.terminal,
         "neutral": peaks.neutral[:, :, None],
     }
-    factors = tuple(_factor(data, case, z) for case, z in zip(kept, driving, strict=True))
-    return Solved(data.unit, transformer, tuple(kept), factors, solution, driving, wave, exact), missing
-
-
-def _with_direct_current(data: NetworkData) -> NetworkData:
-    """Return the data with d.c. resistances for the decay of the offset, where the file gives any."""
-    if all(row.dc_resistance is None for row in data.unit.impedances):
-        return data
-    return NetworkData(data.unit, data.rules, data.category, direct_current=True)
+    factors = tuple(_factor(data, case, z) for case, z in zip(cases, decay.driving_point, strict=True))
+    return Solved(data.unit, transformer, tuple(cases), factors, solution, decay, wave, exact)
 
 
 def _of_windings(transformer: Transformer, coil: Any) -> Any:
