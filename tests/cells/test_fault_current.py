@@ -25,6 +25,7 @@ from throughfault.cells.fault_current import (
     system_impedance,
     system_reactance,
     system_resistance,
+    three_phase_fault_current,
     transformer_impedance,
     x_over_r_double_line_to_earth,
     x_over_r_line_to_earth,
@@ -59,6 +60,13 @@ def test_line_to_earth_current_meets_the_conditions(r1, x1, r0, x0):
     """V_a = 0, I_b = I_c = 0."""
     current = behind(complex(r1, x1), complex(r0, x0), 33.0, [(V_A, NO), (NO, V_B), (NO, V_C)])
     assert line_to_earth_current(33.0, r1, x1, r0, x0) == pytest.approx(abs(current[0]), rel=1e-9)
+
+
+@given(SIZES, SIZES, SIZES, SIZES)
+def test_three_phase_fault_current_meets_the_conditions(r1, x1, r0, x0):
+    """V_a = V_b = V_c = 0; the zero sequence has no part."""
+    current = behind(complex(r1, x1), complex(r0, x0), 33.0, [(V_A, NO), (V_B, NO), (V_C, NO)])
+    assert np.abs(current) == pytest.approx(three_phase_fault_current(33.0, r1, x1), rel=1e-9)
 
 
 @given(SIZES, SIZES, SIZES, SIZES)

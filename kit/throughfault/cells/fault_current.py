@@ -332,6 +332,22 @@ AGAINST_NETWORK = "tests/cells/test_fault_current.py: against the boundary condi
 
 
 @cell(
+    title="Three-phase short-circuit current at the fault",
+    source=Source("Wagner-Evans-1933", "three-phase fault, positive sequence alone", "derived"),
+    valid_for=(FAULT_VOLTAGE, *SEQUENCE[:2]),
+    checks=(AGAINST_NETWORK,),
+)
+def three_phase_fault_current(
+    fault_voltage: Annotated[float, nom.fault_voltage],
+    resistance_1: Annotated[float, nom.resistance_1],
+    reactance_1: Annotated[float, nom.reactance_1],
+) -> Annotated[float, nom.symmetrical_current]:
+    """Give the current at the fault; no other sequence carries any."""
+    U, R_1, X_1 = fault_voltage, resistance_1, reactance_1
+    return U / (sqrt(3) * hypot(R_1, X_1))
+
+
+@cell(
     title="Line-to-line short-circuit current",
     source=Source("Wagner-Evans-1933", "line-to-line fault, equal positive and negative sequence", "derived"),
     valid_for=(FAULT_VOLTAGE, *SEQUENCE[:2]),
