@@ -16,13 +16,19 @@ from throughfault.numerics.wave import first_maximum
 from throughfault.sources import Source
 from throughfault.tables import table
 
-__all__ = ["peak_factor_closed_form", "peak_factor_exact", "peak_factor_from_table", "peak_short_circuit_current"]
+__all__ = [
+    "peak_factor_closed_form",
+    "peak_factor_exact",
+    "peak_factor_from_table",
+    "peak_factor_table_range",
+    "peak_short_circuit_current",
+]
 
 
 @cell(
     title="Peak factor, closed form",
     source=Source("IEC60076-5:2006", "4.2.3 (the same as K of IEEE C57.12.00, 7.2)", "recalled"),
-    valid_for=(Range("x_over_r", above=0.0, at_most=1e6),),
+    valid_for=(Range("x_over_r", above=0.0),),
     terms={"phi": nom.impedance_angle},
     checks=(
         "tests/published/peak_factor.toml: the eleven factors of the IEEE table",
@@ -80,6 +86,12 @@ def peak_factor_exact(x_over_r: ArrayLike) -> Any:
     return float(peak) if peak.ndim == 0 else peak
 
 
+def peak_factor_table_range() -> tuple[float, float]:
+    """Return X/R of the first and of the last row of the standard's table."""
+    ratios = table("iec60076_5_2006_peak_factor").column("x_over_r")
+    return ratios[0], ratios[-1]
+
+
 def _between_its_rows(given: dict[str, float], got: float) -> float:
     """Residual of the two-point form of the straight line through the neighbouring rows."""
     factors = table("iec60076_5_2006_peak_factor")
@@ -99,16 +111,17 @@ def _between_its_rows(given: dict[str, float], got: float) -> float:
         ),
     ),
     example=lambda: {"x_over_r": 7.0},
-    valid_for=("X/R at least 1 and at most 14",),
+    valid_for=("X/R at least {:g} and at most {:g}".format(*peak_factor_table_range()),),
     checks=("tests/cells/test_peak_factor.py: rows are returned as tabled, a middle value lies on the straight line",),
 )
 def peak_factor_from_table(x_over_r: ArrayLike) -> Any:
     """Factor of the standard's table, interpolated linearly; a float, or an array of the same shape."""
     factors = table("iec60076_5_2006_peak_factor")
     x = np.asarray(x_over_r, dtype=np.float64)
-    if not bool(np.all((x >= 1.0) & (x <= 14.0))):
-        place = factors.source.citation
-        raise OutsideValidity(f"peak_factor_from_table: 'x_over_r' must be at least 1 and at most 14 ({place}).")
+    least, greatest = peak_factor_table_range()
+    if not bool(np.all((x >= least) & (x <= greatest))):
+        ends = f"at least {least:g} and at most {greatest:g}"
+        raise OutsideValidity(f"peak_factor_from_table: 'x_over_r' must be {ends} ({factors.source.citation}).")
     factor = np.asarray(np.interp(x, factors.column("x_over_r"), factors.column("peak_factor")))
     return float(factor) if factor.ndim == 0 else factor
 

@@ -134,7 +134,7 @@ def test_zero_sequence_of_the_system():
 
 def test_a_terminal_without_power_has_no_system():
     """A table of a terminal that gives no short-circuit power is no network."""
-    found = assessed(('short_circuit_power = "table"\n', ""), ("x_over_r = 8.0", 'out_of_phase = "180 deg"'))
+    found = assessed(('short_circuit_power = "table"\n', ""), ("x_over_r = 8.0", 'voltage = "20 kV"'))
     assert found.systems == ()
 
 
@@ -159,6 +159,49 @@ def test_a_guaranteed_impedance_without_tolerance_is_an_open_point(impedance, us
     text = f"HV-LV, tapping 'principal': guaranteed without a tolerance; usual is {usual}, not taken off."
     assert points(found) == {"requirement.HV-LV.principal.tolerance": text}
     assert points(assessed(("load_loss", 'basis = "measured"\nload_loss'), ('tolerance = "10 %"\n', ""))) == {}
+
+
+THIRD = (
+    ('"Dyn11"', '"Dyn11yn11"'),
+    ("[[impedances]]", '[windings.TV]\nrated_power = "630 kVA"\nrated_voltage = "400 V"\nhighest_voltage = "1.1 kV"\n[[impedances]]'),
+    ('tolerance = "10 %"\n', "".join(
+        f'[[impedances]]\nbetween = ["{a}", "TV"]\nimpedance = "4.0 %"\nbase_power = "630 kVA"\nload_loss = "6.5 kW"\n'
+        for a in ("HV", "LV")
+    )),
+)  # fmt: skip
+
+
+def test_the_narrow_tolerance_is_the_first_pairs():
+    """Of three windings only the first pair has 10 %, the other pairs 15 %; under IEEE nothing is said."""
+    found = {name: text for name, text in points(assessed(*THIRD)).items() if name.endswith("tolerance")}
+    usual = {name.split(".")[1]: text.partition("usual is ")[2].partition(",")[0] for name, text in found.items()}
+    assert usual == {"HV-LV": "10 %", "HV-TV": "15 %", "LV-TV": "15 %"}
+    assert not [name for name in points(assessed(IEEE, *THIRD)) if name.endswith("tolerance")]
+
+
+def test_the_network_of_three_windings_is_kept():
+    """3.15 % in category I, but three windings: the network counts under IEC and not under IEEE."""
+    assert not assessed(*THIRD).systems[0].neglect["LV"].neglected
+    small = ("630 kVA", "500 kVA")
+    assert assessed(IEEE, *THIRD, small).systems[0].neglect["LV"].neglected
+
+
+def test_three_windings_have_no_ceiling():
+    """The ceilings of the table are those of units with two separate windings."""
+    small = ("630 kVA", "500 kVA")
+    assert "requirement.HV.ceiling" in values(assessed(IEEE, small))
+    assert "requirement.HV.ceiling" not in values(assessed(IEEE, *THIRD, small))
+
+
+def test_a_dry_unit_under_the_liquid_immersed_standard_is_an_open_point():
+    """IEEE C57.12.00 is for liquid-immersed units; IEC covers both kinds."""
+    dry = ('immersion = "oil"', 'immersion = "dry"')
+    assert points(assessed(IEEE, dry))["requirement.immersion"] == (
+        "IEEE C57.12.00 is for liquid-immersed units and is applied to a dry-type unit: its categories, networks, "
+        "durations and form of the temperature; the standard for dry-type units differs."
+    )
+    assert "requirement.immersion" not in points(assessed(dry))
+    assert "requirement.immersion" not in points(assessed(IEEE))
 
 
 def test_duration_shorter_than_asked_is_an_open_point():

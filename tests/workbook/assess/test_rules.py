@@ -53,10 +53,11 @@ def test_what_the_rule_sets_say_of_themselves():
         (IEEE, 5.001, 3, False, "III"), (IEEE, 30.0, 3, False, "III"), (IEEE, 30.1, 3, False, "IV"),
         (IEEE, 1.667, 1, False, "II"), (IEEE, 10.0, 1, False, "III"), (IEEE, 10.1, 1, False, "IV"),
         (IEEE, 10.0, 1, True, "III"), (IEEE, 30.0, 3, True, "III"), (IEEE, 31.0, 3, True, "IV"),
+        (IEEE, 0.4, 1, True, "II"), (IEEE, 1.2, 3, True, "II"), (IEEE, 0.4, 1, False, "I"),
     ],
 )  # fmt: skip
 def test_category_by_power(rules, power, phases, bank, category):
-    """Borders of the categories; IEC takes the bank's power, IEEE the single-phase unit's."""
+    """Borders of the categories; a bank counts by its own power, under IEEE in the three-phase column."""
     found = rules.category(power, phases, bank=bank)
     assert found.name == category
     assert (found.note == "") == (category is not None)
@@ -141,6 +142,29 @@ def test_when_the_system_is_left_out(rules, category, ratio, neglected):
     assert found.reason
 
 
+def test_the_system_counts_for_more_than_two_separate_windings():
+    """IEC leaves the system out of two separate windings only; IEEE goes by category alone."""
+    found = IEC.source_neglected("I", 0.01, two_winding=False)
+    assert (found.neglected, found.reason) == (
+        False, "the system impedance is left out of units with two separate windings only",
+    )  # fmt: skip
+    assert IEEE.source_neglected("I", 0.01, two_winding=False).neglected
+
+
+@pytest.mark.parametrize(
+    ("impedance", "principal", "first_pair", "tolerance"),
+    [
+        (9.9, True, True, 10.0), (10.0, True, True, 7.5), (9.9, False, True, 15.0), (10.0, False, True, 10.0),
+        (9.9, True, False, 15.0), (10.0, True, False, 10.0), (10.0, False, False, 10.0),
+    ],
+)  # fmt: skip
+def test_usual_tolerance_of_an_impedance(impedance, principal, first_pair, tolerance):
+    """The narrow tolerance is that of the first pair on its principal tapping; IEEE has none here."""
+    found = IEC.usual_tolerance(impedance, principal=principal, first_pair=first_pair)
+    assert (found.value, found.source) == (tolerance, "IEC60076-1:2011, Table 1")
+    assert IEEE.usual_tolerance(impedance, principal=principal, first_pair=first_pair).value is None
+
+
 def test_x0_over_x1_where_none_is_given():
     """IEC gives a range, so both ends; IEEE one default."""
     assert [t.value for t in IEC.x0_over_x1_scan()] == [1.0, 3.0]
@@ -201,7 +225,8 @@ def test_iec_peak_factor(ratio, category, given, factor, how):
 
 
 @pytest.mark.parametrize(
-    ("ratio", "factor"), [(0.0, math.sqrt(2)), (2.0, 1.746), (20.0, 2.624), (math.inf, 2 * math.sqrt(2))]
+    ("ratio", "factor"),
+    [(0.0, math.sqrt(2)), (2.0, 1.746), (20.0, 2.624), (1e9, 2 * math.sqrt(2)), (math.inf, 2 * math.sqrt(2))],
 )
 def test_ieee_peak_factor(ratio, factor):
     """The closed form and its two ends, whatever the category."""
@@ -230,10 +255,13 @@ def test_ieee_ceiling_of_category_one(power, phases, ceiling):
 
 
 def test_no_ceiling_elsewhere():
-    """Other categories, a high secondary voltage, and IEC."""
-    why = "ceilings hold for category I units with a low-voltage secondary only"
+    """Other categories, a high secondary voltage, more than two separate windings, and IEC."""
+    why = "ceilings hold for two-winding category I units with a low-voltage secondary only"
     assert IEEE.current_ceiling("II", 2.0, 3, 0.48).note == why
     assert IEEE.current_ceiling("I", 0.3, 3, 4.16).note == why
+    assert IEEE.current_ceiling("I", 0.3, 3, 0.601).note == why
+    assert IEEE.current_ceiling("I", 0.3, 3, 0.48, two_winding=False).note == why
+    assert IEEE.current_ceiling("I", 0.3, 3, 0.6).value == 35.0
     assert IEC.current_ceiling("I", 0.3, 3, 0.4).note == "the standard sets no ceiling on the current"
 
 

@@ -9,10 +9,9 @@ from typing import Any
 from throughfault.cells.fault_current import rated_impedance_ratio
 from throughfault.declare import Fragment, OpenPoint
 from throughfault.quantities import Quantity
-from throughfault.tables import table
 from throughfault.workbook.assess.requirement_line import Asked, Lines
 from throughfault.workbook.assess.requirement_system import SystemUsed, system_used
-from throughfault.workbook.assess.rules import Category, RuleSet, Tabled, category_of
+from throughfault.workbook.assess.rules import Category, RuleSet, Tabled, category_of, separate_pair
 from throughfault.workbook.assess.thermal_inputs import DutyLike, duration_of
 from throughfault.workbook.assess.winding_current import multiple_step, rated_steps, three_phase_power
 from throughfault.workbook.inputs import Unit
@@ -56,8 +55,9 @@ def assess_requirement(unit: Unit, rules: RuleSet, duty: DutyLike) -> Requiremen
     found = Lines()
     category = category_of(unit, rules)
     _category(found, category)
+    _immersion(unit, rules, found)
     _impedances(unit, rules, found)
-    _tolerances(unit, found)
+    _tolerances(unit, rules, found)
     systems = tuple(system_used(unit, rules, name, category, found) for name in unit.system.terminals)
     _base(unit, rules, found)
     _durations(unit, rules, duty, category, found)
@@ -79,12 +79,22 @@ def _category(found: Lines, category: Category) -> None:
         found.points.append(OpenPoint("requirement.category", text, clause=category.source))
 
 
+def _immersion(unit: Unit, rules: RuleSet, found: Lines) -> None:
+    """Point out a dry-type unit under a standard that is for liquid-immersed ones."""
+    if unit.rating.immersion not in rules.immersions:
+        text = (
+            f"{rules.title} is for liquid-immersed units and is applied to a dry-type unit: its categories, networks, "
+            "durations and form of the temperature; the standard for dry-type units differs."
+        )
+        found.points.append(OpenPoint("requirement.immersion", text, clause=rules.key))
+
+
 def _impedances(unit: Unit, rules: RuleSet, found: Lines) -> None:
     """Hold the principal impedance of two separate windings against the standard's minimum."""
     power = three_phase_power(unit, max((w.rated_power for w in unit.windings.values()), key=lambda q: q.to("MVA")))
     least = rules.minimum_impedance(power.to("MVA"))
     found.tabled("requirement.minimum_impedance", least, r"z_{\min}", "minimum impedance, principal tapping")
-    if len(unit.windings) != 2 or unit.group.auto:
+    if not separate_pair(unit):
         return
     row = unit.impedance(*unit.windings)
     if row is None:
@@ -106,22 +116,21 @@ def _impedances(unit: Unit, rules: RuleSet, found: Lines) -> None:
         found.points.append(OpenPoint("requirement.minimum_impedance", text, values, least.source))
 
 
-def _tolerances(unit: Unit, found: Lines) -> None:
+def _tolerances(unit: Unit, rules: RuleSet, found: Lines) -> None:
     """Point out guaranteed impedances whose tolerance the duty does not take off."""
-    rows = table("iec60076_1_2011_impedance_tolerance")
+    first = set(unit.impedances[0].between) if unit.impedances else set()
     for row in unit.impedances:
-        if row.basis != "guaranteed" or row.tolerance is not None:
+        principal, of_first = row.tapping == PRINCIPAL, set(row.between) == first
+        usual = rules.usual_tolerance(row.impedance.to("%"), principal=principal, first_pair=of_first)
+        if row.basis != "guaranteed" or row.tolerance is not None or usual.value is None:
             continue
-        z = row.impedance.to("%")
-        usual = next(r for r in rows.rows if r["below"] is None or z < r["below"])
-        tolerance = usual["tolerance" if row.tapping == PRINCIPAL else "tolerance_elsewhere"]
         pair = "-".join(row.between)
         text = (
             f"{pair}, tapping '{row.tapping}': guaranteed without a tolerance; usual is {{tolerance}}, not taken off."
         )
-        values = {"tolerance": Quantity(tolerance, "%")}
+        values = {"tolerance": Quantity(usual.value, "%")}
         point = f"requirement.{pair}.{row.tapping}.tolerance"
-        found.points.append(OpenPoint(point, text, values, rows.source.citation))
+        found.points.append(OpenPoint(point, text, values, usual.source))
 
 
 def _base(unit: Unit, rules: RuleSet, found: Lines) -> None:
@@ -143,7 +152,8 @@ def _durations(unit: Unit, rules: RuleSet, duty: DutyLike, category: Category, f
         by_standard = rules.fault_duration(category.name, multiple)
         found.tabled(f"requirement.{name}.duration", by_standard, "t", f"duration asked of {name}")
         _shorter(name, duration_of(unit, rules, name, category.name, multiple), by_standard, found)
-        ceiling = rules.current_ceiling(category.name, winding.rated_power.to("MVA"), unit.rating.phases, lowest)
+        power, two_winding = winding.rated_power.to("MVA"), separate_pair(unit)
+        ceiling = rules.current_ceiling(category.name, power, unit.rating.phases, lowest, two_winding=two_winding)
         if ceiling.value is not None:
             found.tabled(f"requirement.{name}.ceiling", ceiling, r"N_{\max}", f"ceiling of the current of {name}")
         _above_ceiling(name, multiple, ceiling, found)

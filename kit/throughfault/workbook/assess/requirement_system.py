@@ -8,7 +8,7 @@ from throughfault.cells.fault_current import system_impedance, system_share, tra
 from throughfault.declare import Missing, Step
 from throughfault.quantities import Quantity
 from throughfault.workbook.assess.requirement_line import Asked, Lines
-from throughfault.workbook.assess.rules import Category, Neglect, RuleSet, Tabled
+from throughfault.workbook.assess.rules import Category, Neglect, RuleSet, Tabled, separate_pair
 from throughfault.workbook.assess.winding_current import three_phase_power
 from throughfault.workbook.inputs import Unit
 from throughfault.workbook.inputs.system import Source
@@ -60,7 +60,8 @@ def system_used(unit: Unit, rules: RuleSet, name: str, category: Category, found
     for other in unit.windings:
         step = None if other == name else _share(unit, name, other, impedance, found)
         if step is not None:
-            neglect[other] = rules.source_neglected(category.name, step.result.to("p.u."))
+            ratio = step.result.to("p.u.")
+            neglect[other] = rules.source_neglected(category.name, ratio, two_winding=separate_pair(unit))
             found.asked[-1] = Asked(found.asked[-1].label, found.asked[-1].outcome, neglect[other].reason)
     return SystemUsed(name, power, neglect, ratios)
 

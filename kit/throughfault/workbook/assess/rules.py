@@ -23,6 +23,7 @@ __all__ = [
     "bank_power",
     "category_of",
     "rules_for",
+    "separate_pair",
 ]
 
 ThermalMethod = Literal["average temperature", "all heat stored"]
@@ -111,17 +112,27 @@ class RuleSet(Protocol):
     def base_power_is_self_cooled(self) -> bool:
         """Whether multiples of the current refer to the self-cooled power."""
 
+    @property
+    def immersions(self) -> tuple[str, ...]:
+        """The kinds of unit that the standard is for."""
+
     def category(self, power: float, phases: int, *, bank: bool) -> Category:
         """Return the category for a rated power in MVA, that of one unit of a bank where ``phases`` is 1."""
 
     def minimum_impedance(self, power: float) -> Tabled:
         """Return the minimum impedance in % for a rated power in MVA."""
 
+    def usual_tolerance(self, impedance: float, *, principal: bool, first_pair: bool) -> Tabled:
+        """Return the tolerance in % of a guaranteed impedance in %, as usual where none is agreed."""
+
     def system_short_circuit_power(self, highest_voltage: float, column: str | None) -> Tabled:
         """Return the default short-circuit power in MVA for a highest voltage in kV."""
 
-    def source_neglected(self, category: str | None, ratio: float) -> Neglect:
-        """Tell whether a system impedance, as share of the transformer's (0.05 = 5 %), is left out."""
+    def source_neglected(self, category: str | None, ratio: float, *, two_winding: bool = True) -> Neglect:
+        """Tell whether a system impedance, as share of the transformer's (0.05 = 5 %), is left out.
+
+        ``two_winding``: a unit with two separate windings.
+        """
 
     def x0_over_x1_scan(self) -> tuple[Tabled, ...]:
         """Return the X0/X1 values to run where none is given."""
@@ -135,7 +146,9 @@ class RuleSet(Protocol):
     def peak_factor(self, x_over_r: float, category: str | None, given: float | None = None) -> PeakFactor:
         """Return the factor that decides; ``x_over_r`` may be infinite."""
 
-    def current_ceiling(self, category: str | None, power: float, phases: int, low_voltage: float) -> Tabled:
+    def current_ceiling(
+        self, category: str | None, power: float, phases: int, low_voltage: float, *, two_winding: bool = True
+    ) -> Tabled:
         """Return the highest current, times rated, that is asked of a unit (MVA, kV)."""
 
     def fault_duration(self, category: str | None, multiple: float | None) -> Tabled:
@@ -154,6 +167,11 @@ class RuleSet(Protocol):
 def bank_power(power: float, phases: int, *, bank: bool) -> float:
     """Return the three-phase power of a bank whose file states one unit (``phases`` 1), else the power itself."""
     return 3.0 * power if bank and phases == 1 else power
+
+
+def separate_pair(unit: Unit) -> bool:
+    """Tell whether a unit has two separate windings and no more."""
+    return len(unit.windings) == 2 and not unit.group.auto
 
 
 def category_of(unit: Unit, rules: RuleSet) -> Category:

@@ -7,7 +7,7 @@ from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 from typing import Any
 
-from throughfault.cells.peak_factor import peak_factor_exact, peak_factor_from_table
+from throughfault.cells.peak_factor import peak_factor_exact, peak_factor_from_table, peak_factor_table_range
 from throughfault.declare import Limit
 from throughfault.tables import Table, table
 from throughfault.workbook.assess.rules import (
@@ -24,7 +24,6 @@ from throughfault.workbook.assess.rules import (
 __all__ = ["IEC60076_5_2006", "Iec60076Part5"]
 
 SYSTEM_COLUMNS = {"european": "european", "north american": "north_american"}
-LOWEST_TABLED, HIGHEST_TABLED = 1.0, 14.0  # X/R of the first and last row
 
 
 def _for_power(rows: Table, power: float) -> dict[str, Any] | None:
@@ -45,6 +44,7 @@ class Iec60076Part5:
     thermal_method: ThermalMethod = "average temperature"
     start_is: str = "mean winding temperature"
     base_power_is_self_cooled: bool = False
+    immersions: tuple[str, ...] = ("oil", "dry")
 
     def category(self, power: float, phases: int, *, bank: bool) -> Category:
         """Return the category; units of a bank take the bank's power."""
@@ -64,6 +64,12 @@ class Iec60076Part5:
         note = "by agreement; more than this value" if row["to"] is None else ""
         return Tabled.of(rows, row["impedance"], "%", note, row["confidence"])
 
+    def usual_tolerance(self, impedance: float, *, principal: bool, first_pair: bool) -> Tabled:
+        """Return the tolerance by the size of the impedance; the narrow one is the first pair's, principal tapping."""
+        rows = table("iec60076_1_2011_impedance_tolerance")
+        row = next(row for row in rows.rows if row["below"] is None or impedance < row["below"])
+        return Tabled.of(rows, row["tolerance" if principal and first_pair else "tolerance_elsewhere"], "%")
+
     def system_short_circuit_power(self, highest_voltage: float, column: str | None) -> Tabled:
         """Return the tabled power; the European column unless the North American one is named."""
         rows = table("iec60076_5_2006_system_power")
@@ -73,24 +79,19 @@ class Iec60076Part5:
                 return Tabled.of(rows, row[name], "MVA", f"column for current {column or 'european'} practice")
         return Tabled.of(rows, None, "MVA", "the table has no row for the highest voltage of the winding")
 
-    def source_neglected(self, category: str | None, ratio: float) -> Neglect:
-        """Leave the system out in category I up to the tabled share only."""
+    def source_neglected(self, category: str | None, ratio: float, *, two_winding: bool = True) -> Neglect:
+        """Leave the system out of two separate windings in category I up to the tabled share only."""
         rows = table("iec60076_5_2006_source")
-        row, cite, known = rows.rows[0], rows.source.citation, rows.source.provenance
-        if category != row["neglected_in"]:
-            return Neglect(
-                neglected=False, reason="the system impedance counts in this category", source=cite, provenance=known
-            )
-        if ratio * 100.0 > row["neglected_up_to"]:
-            return Neglect(
-                neglected=False, reason="the share of the system impedance is too large", source=cite, provenance=known
-            )
-        return Neglect(
-            neglected=True,
-            reason="the system impedance is a small share of the transformer's, in category I",
-            source=cite,
-            provenance=known,
-        )
+        row, source = rows.rows[0], rows.source
+        if not two_winding:
+            left_out, reason = False, "the system impedance is left out of units with two separate windings only"
+        elif category != row["neglected_in"]:
+            left_out, reason = False, "the system impedance counts in this category"
+        elif ratio * 100.0 > row["neglected_up_to"]:
+            left_out, reason = False, "the share of the system impedance is too large"
+        else:
+            left_out, reason = True, "the system impedance is a small share of the transformer's, in category I"
+        return Neglect(neglected=left_out, reason=reason, source=source.citation, provenance=source.provenance)
 
     def x0_over_x1_scan(self) -> tuple[Tabled, ...]:
         """Return both ends of the range that the standard gives."""
@@ -109,10 +110,11 @@ class Iec60076Part5:
 
     def peak_factor(self, x_over_r: float, category: str | None, given: float | None = None) -> PeakFactor:
         """Take the table between its ends, the exact first maximum below, the default above unless one is given."""
-        if LOWEST_TABLED <= x_over_r <= HIGHEST_TABLED:
+        least, greatest = peak_factor_table_range()
+        if least <= x_over_r <= greatest:
             made = peak_factor_from_table
             return PeakFactor(made(x_over_r), "table, interpolated", made.source.citation, made.source.provenance)
-        if x_over_r < LOWEST_TABLED:
+        if x_over_r < least:
             exact = peak_factor_exact
             return PeakFactor(exact(x_over_r), "exact first maximum", exact.source.citation, exact.source.provenance)
         if given is not None:
@@ -123,8 +125,11 @@ class Iec60076Part5:
             return PeakFactor(None, "no category, so no default factor", cite, known)
         return PeakFactor(defaults.row(category=category)["peak_factor"], "default of the category", cite, known)
 
-    def current_ceiling(self, category: str | None, power: float, phases: int, low_voltage: float) -> Tabled:  # noqa: ARG002
+    def current_ceiling(
+        self, category: str | None, power: float, phases: int, low_voltage: float, *, two_winding: bool = True
+    ) -> Tabled:
         """Return None: the standard sets no ceiling."""
+        del category, power, phases, low_voltage, two_winding
         return Tabled.of(table("iec60076_5_2006_duration"), None, "1", "the standard sets no ceiling on the current")
 
     def fault_duration(self, category: str | None, multiple: float | None) -> Tabled:  # noqa: ARG002

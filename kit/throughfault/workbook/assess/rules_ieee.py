@@ -22,7 +22,6 @@ from throughfault.workbook.assess.rules import (
 
 __all__ = ["IEEEC57_12_00_2015", "IeeeC57Part12"]
 
-SECONDARY_UP_TO = 0.6  # kV, of the table of ceilings
 WITHOUT_RESISTANCE = 2.0 * math.sqrt(2.0)
 
 
@@ -36,13 +35,14 @@ class IeeeC57Part12:
     thermal_method: ThermalMethod = "all heat stored"
     start_is: str = "hottest-spot temperature"
     base_power_is_self_cooled: bool = True
+    immersions: tuple[str, ...] = ("oil",)
 
     def category(self, power: float, phases: int, *, bank: bool) -> Category:
-        """Return the category; units of a bank count as single-phase units of a third of the bank's power."""
-        rows = table("ieee_c57_12_00_2015_category")
+        """Return the category; a bank counts as a three-phase unit of its own power."""
+        rows = table("ieee_c57_12_90_draft_category")
         cite, known = rows.source.citation, rows.source.provenance
-        kva = bank_power(power, phases, bank=bank) * 1000.0 / (3.0 if bank else 1.0)
-        column = "1" if bank or phases == 1 else "3"
+        kva = bank_power(power, phases, bank=bank) * 1000.0
+        column = "1" if phases == 1 and not bank else "3"
         fitting = [row for row in rows.rows if row["phases"] == column]
         if kva < fitting[0]["from"]:
             return Category(None, cite, known, "the rated power lies below the first category")
@@ -54,6 +54,10 @@ class IeeeC57Part12:
         why = "the standard sets no minimum impedance"
         return Tabled(None, "%", "IEEEC57.12.00-2015, 7.1", "recalled", "H", why)
 
+    def usual_tolerance(self, impedance: float, *, principal: bool, first_pair: bool) -> Tabled:  # noqa: ARG002
+        """Return None: the tolerance of the other standard is not carried over."""
+        return Tabled(None, "%", "IEEEC57.12.00-2015", "recalled", "M", "no tolerance of this standard is tabled")
+
     def system_short_circuit_power(self, highest_voltage: float, column: str | None) -> Tabled:  # noqa: ARG002 - one column
         """Return the default power; the first row holds for every lower voltage."""
         rows = table("ieee_c57_12_00_2015_system_power")
@@ -64,7 +68,7 @@ class IeeeC57Part12:
                 return Tabled.of(rows, row["power"], "MVA")
         return Tabled.of(rows, None, "MVA", "the table has no row for the highest voltage of the winding")
 
-    def source_neglected(self, category: str | None, ratio: float) -> Neglect:  # noqa: ARG002 - by category alone
+    def source_neglected(self, category: str | None, ratio: float, *, two_winding: bool = True) -> Neglect:  # noqa: ARG002 - by category alone
         """Take the transformer alone in the lower categories."""
         rows = table("ieee_c57_12_00_2015_source")
         cite, known = rows.source.citation, rows.source.provenance
@@ -103,11 +107,14 @@ class IeeeC57Part12:
         value = ends[x_over_r] if x_over_r in ends else closed(x_over_r)
         return PeakFactor(value, "closed form", "IEEEC57.12.00-2015, 7.2", "recalled")
 
-    def current_ceiling(self, category: str | None, power: float, phases: int, low_voltage: float) -> Tabled:
-        """Return the ceiling of a category I distribution unit."""
+    def current_ceiling(
+        self, category: str | None, power: float, phases: int, low_voltage: float, *, two_winding: bool = True
+    ) -> Tabled:
+        """Return the ceiling of a category I distribution unit with two separate windings."""
         rows = table("ieee_c57_12_00_2015_current_ceiling")
-        if category != "I" or low_voltage > SECONDARY_UP_TO:
-            return Tabled.of(rows, None, "1", "ceilings hold for category I units with a low-voltage secondary only")
+        if category != "I" or not two_winding or low_voltage * 1000.0 > max(rows.column("secondary_up_to")):
+            why = "ceilings hold for two-winding category I units with a low-voltage secondary only"
+            return Tabled.of(rows, None, "1", why)
         kva = power * 1000.0
         for row in rows.rows:
             if row["phases"] == str(phases) and row["from"] <= kva <= row["to"]:
