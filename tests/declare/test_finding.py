@@ -85,6 +85,16 @@ def test_within_means_utilisation_up_to_one(value, bound):
         assert (check.verdict == "within") == (check.utilisation <= 1.0)
 
 
+@pytest.mark.parametrize("value", [0.0, -5.0, float("inf"), float("nan")])
+def test_a_limit_is_above_zero_and_finite(value):
+    """No path leads to "within" by a limit that is none, a signatory's neither."""
+    with pytest.raises(DeclarationError) as fault:
+        Limit(value, "degC", "at most", "a clause", "maker")
+    assert str(fault.value) == f"a limit must be above zero and finite, got {value:g} degC (a clause)."
+    with pytest.raises(DeclarationError):
+        AT_MOST.replaced(Quantity(value, "degC"), "read by a signatory")
+
+
 def test_outcomes_have_a_value_or_a_reason():
     """A result without value says why; one with a value gives no reason; units and provenances exist."""
     with pytest.raises(DeclarationError, match=r"^x: a result has a value, or the reason why it is not assessed\.$"):

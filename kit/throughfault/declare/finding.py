@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 from collections.abc import Iterable, Mapping
 from dataclasses import asdict, dataclass, field, replace
 from typing import Any, Literal
@@ -89,6 +90,11 @@ class Limit:
     provenance: str
     confidence: Literal["H", "M", "L"] = "H"
     instead_of: Limit | None = None
+
+    def __post_init__(self) -> None:
+        if not 0.0 < self.value < math.inf:
+            got = f"{self.value:g} {self.unit} ({self.source})"
+            raise DeclarationError(f"a limit must be above zero and finite, got {got}.")
 
     @property
     def decides(self) -> bool:

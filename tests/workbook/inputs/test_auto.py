@@ -66,4 +66,12 @@ def test_two_windings_at_least(whole):
 def test_a_limit_of_thousands_of_volts(change):
     """A limit may be any quantity where the kind of its result is not known."""
     made = change(('"strength.LV.buckling" = { value = 1.8', '"headroom.LV.margin" = { value = "12 kV"'))
-    assert made.limits["headroom.LV.margin"].quantity.to("V") == 12000.0
+    assert made.limits["headroom.LV.margin"].value.to("V") == 12000.0
+
+
+def test_out_of_phase_closing_needs_a_network(refused):
+    """A stabilising winding has no network that could be closed out of phase."""
+    faults = refused(("[earthing]", '[system.LV]\nout_of_phase = "180 deg"\n\n[earthing]'))
+    assert faults == [
+        "unit.toml: [line 95] system.LV.out_of_phase: needs system.LV.short_circuit_power beside it.",
+    ]

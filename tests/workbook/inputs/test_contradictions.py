@@ -220,6 +220,8 @@ CASES = {
             "unit.toml: [line 86] system.HV.short_circuit_power_minimum: needs system.HV.short_circuit_power beside it.",
             "unit.toml: [line 87] system.HV.x_over_r: needs system.HV.short_circuit_power beside it.",
             "unit.toml: [line 88] system.HV.x0_over_x1: needs system.HV.short_circuit_power beside it.",
+            "unit.toml: [line 89] system.HV.peak_factor: needs system.HV.short_circuit_power beside it.",
+            "unit.toml: [line 90] system.HV.out_of_phase: needs system.HV.short_circuit_power beside it.",
             "unit.toml: [line 91] system.HV.series_reactance: needs system.HV.short_circuit_power beside it.",
         ],
     ),
@@ -312,6 +314,48 @@ CASES = {
         [("value = 1.8", 'value = "0.35 Rp0.2"')],
         [
             "unit.toml: [line 197] limits.\"strength.LV.buckling\".value: is a share of Rp0.2, but 'strength.LV.buckling' is of kind number."
+        ],
+    ),
+    "share of Rp0.2 for apparatus": (
+        [('"strength.LV.buckling" = { value = 1.8', '"apparatus.bushings.HV.peak_current" = { value = "0.35 Rp0.2"')],
+        [
+            "unit.toml: [line 197] limits.\"apparatus.bushings.HV.peak_current\".value: is a share of Rp0.2, but 'apparatus.bushings.HV.peak_current' is of kind current."
+        ],
+    ),
+    "share of Rp0.2 for an unknown result": (
+        [('"strength.LV.buckling" = { value = 1.8', '"strength.LV.bukling" = { value = "0.35 Rp0.2"')],
+        [
+            "unit.toml: [line 197] limits.\"strength.LV.bukling\".value: is a share of Rp0.2, but 'strength.LV.bukling' is of kind unknown."
+        ],
+    ),
+    "limit of apparatus in another unit": (
+        [('"strength.LV.buckling" = { value = 1.8', '"apparatus.bushings.HV.peak_current" = { value = "12 kV"')],
+        [
+            "unit.toml: [line 197] limits.\"apparatus.bushings.HV.peak_current\".value: must be a current (unit one of mA, A, kA) for 'apparatus.bushings.HV.peak_current', got 12 kV."
+        ],
+    ),
+    "limit of an unknown apparatus": (
+        [('"strength.LV.buckling" = { value = 1.8', '"apparatus.bushing.HV.peak_current" = { value = "12 kA"')],
+        [
+            "unit.toml: [line 197] limits.\"apparatus.bushing.HV.peak_current\": is not a result: 'bushing' is no apparatus (did you mean 'bushings'?); known: tap_changer, bushings, neutral."
+        ],
+    ),
+    "limit of apparatus at an unknown winding": (
+        [('"strength.LV.buckling" = { value = 1.8', '"apparatus.neutral.HW.peak_current" = { value = "12 kA"')],
+        [
+            "unit.toml: [line 197] limits.\"apparatus.neutral.HW.peak_current\": is not a result: 'HW' is not a winding; known: HV, LV."
+        ],
+    ),
+    "limit of something apparatus is not proven for": (
+        [('"strength.LV.buckling" = { value = 1.8', '"apparatus.tap_changer.peak" = { value = "12 kA"')],
+        [
+            "unit.toml: [line 197] limits.\"apparatus.tap_changer.peak\": is not a result: 'peak' is nothing apparatus is proven for; known: short_time_current, peak_current."
+        ],
+    ),
+    "tolerance below the resistance": (
+        [('load_loss = "180 kW"', 'load_loss = "4.7 MW"'), ('dc_resistance = "0.38 %"\n', "")],
+        [
+            "unit.toml: [line 57] impedances[1].tolerance: leaves an impedance of 11.56 %, which must be above the resistance, 11.75 %, got 7.5 %."
         ],
     ),
     "limit of a neutral current in another unit": (

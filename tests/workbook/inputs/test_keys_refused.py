@@ -415,6 +415,26 @@ CASES = {
             'unit.toml: [line 197] limits."strength.LV.buckling".value: must be a quantity such as "8 kA", a share such as "0.35 Rp0.2" or a bare number for a ratio, got \'1.8 MPaa\' (did you mean \'MPa\'?).'
         ],
     ),
+    "limit below zero": (
+        [('"strength.LV.buckling" = { value = 1.8', '"thermal.LV.temperature" = { value = "-5 degC"')],
+        [
+            "unit.toml: [line 197] limits.\"thermal.LV.temperature\".value: must be above zero, as a limit is, got '-5 degC'."
+        ],
+    ),
+    "limit of zero": (
+        [('"strength.LV.buckling" = { value = 1.8', '"strength.LV.tilting" = { value = "0 kN"')],
+        ["unit.toml: [line 197] limits.\"strength.LV.tilting\".value: must be above zero, as a limit is, got '0 kN'."],
+    ),
+    "limit that is a number below zero": (
+        [("value = 1.8", "value = -1.8")],
+        ['unit.toml: [line 197] limits."strength.LV.buckling".value: must be above zero, as a limit is, got -1.8.'],
+    ),
+    "limit that would overflow in another unit": (
+        [('"strength.LV.buckling" = { value = 1.8', '"strength.LV.hoop_mean" = { value = "1e307 GPa"')],
+        [
+            "unit.toml: [line 197] limits.\"strength.LV.hoop_mean\".value: must be zero or of a size from 1e-12 to 1e+12, got '1e307 GPa'."
+        ],
+    ),
     "limit that is a table": (
         [("value = 1.8", "value = true")],
         [
@@ -430,7 +450,7 @@ CASES = {
     "limit that overflows": (
         [("value = 1.8", 'value = "1e999 MPa"')],
         [
-            'unit.toml: [line 197] limits."strength.LV.buckling".value: must be a quantity such as "8 kA", a share such as "0.35 Rp0.2" or a bare number for a ratio, got \'1e999 MPa\'.'
+            'unit.toml: [line 197] limits."strength.LV.buckling".value: must be a stress such as "1 MPa" (unit one of Pa, kPa, MPa, GPa, N/mm^2), finite, got \'1e999 MPa\'.'
         ],
     ),
     "share for a declared value": (

@@ -57,8 +57,15 @@ POINTS = {
         {"input.system.HV.voltage": "The network at HV is stated at 66 kV, its terminals are rated 132 kV."},
     ),
     "no network": (
-        [('short_circuit_power = "10000 MVA"\nshort_circuit_power_minimum = "4000 MVA"\nx_over_r = 12.0\nx0_over_x1 = 1.5\n', ""), ('series_reactance = "2 ohm"\n', "")],
+        [('short_circuit_power = "10000 MVA"\nshort_circuit_power_minimum = "4000 MVA"\nx_over_r = 12.0\nx0_over_x1 = 1.5\npeak_factor = 2.6\nout_of_phase = "180 deg"\n', ""), ('series_reactance = "2 ohm"\n', "")],
         {"input.system.no_source": "No terminal has a network behind it ([system.<winding>] with short_circuit_power)."},
+    ),
+    "limit of an unknown result": (
+        [('"strength.LV.buckling" = { value', '"strength.LV.bukling" = { value')],
+        {
+            "input.limits.strength.LV.bukling": "limits.'strength.LV.bukling': the kit knows no result that ends so "
+            "(did you mean 'buckling'?); the limit decides nothing."
+        },
     ),
     "turns slightly off": (
         [("turns = 402", "turns = 410")],

@@ -6,8 +6,10 @@ import math
 from collections.abc import Iterator
 
 from throughfault.declare import OpenPoint
+from throughfault.errors import did_you_mean
 from throughfault.quantities import Quantity
 from throughfault.workbook.inputs.open_points_design import DESIGN_POINTS
+from throughfault.workbook.inputs.refused_results import KINDS_OF_RESULTS, kind_of_result
 from throughfault.workbook.inputs.unit import Unit
 
 __all__ = ["open_points"]
@@ -101,6 +103,15 @@ def sources(unit: Unit) -> Iterator[OpenPoint]:
         yield OpenPoint("input.system.no_source", text)
 
 
+def limits_of_unknown_results(unit: Unit) -> Iterator[OpenPoint]:
+    """Find limits under ids of which the kit knows no kind of quantity."""
+    for name, limit in unit.limits.items():
+        if kind_of_result(name) is None:
+            near = did_you_mean(name.rsplit(".", 1)[-1], KINDS_OF_RESULTS)
+            text = f"limits.'{name}': the kit knows no result that ends so{near}; the limit decides nothing."
+            yield OpenPoint(f"input.limits.{name}", text, clause=limit.source)
+
+
 def tap_changer_without_tappings(unit: Unit) -> Iterator[OpenPoint]:
     """Find a tap changer in a unit without tappings."""
     if unit.tap_changer is not None and len(unit.tappings) == 1:
@@ -117,5 +128,6 @@ _POINTS = (
     missing_rows,
     resistance_of_rows,
     sources,
+    limits_of_unknown_results,
     tap_changer_without_tappings,
 )

@@ -45,8 +45,14 @@ def fault_level(file: UnitFile, name: str) -> Iterator[Fault]:
         yield from _needs_power(source, name)
 
 
+#: what says something of a network only, or is run with one only
+_OF_A_NETWORK = (
+    "short_circuit_power_minimum", "x_over_r", "x0_over_x1", "peak_factor", "out_of_phase", "series_reactance",
+)  # fmt: skip
+
+
 def _needs_power(source: Source, name: str) -> Iterator[Fault]:
-    for key in ("short_circuit_power_minimum", "x_over_r", "x0_over_x1", "series_reactance"):
+    for key in _OF_A_NETWORK:
         if getattr(source, key) is not None:
             yield Fault(("system", name, key), f"needs system.{name}.short_circuit_power beside it.")
 

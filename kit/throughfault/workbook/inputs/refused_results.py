@@ -28,7 +28,11 @@ FAMILIES = {
 #: last part of an id -> kind of quantity
 KINDS_OF_RESULTS = {
     **dict.fromkeys(
-        ("symmetrical", "peak", "peak_exact", "terminal_symmetrical", "terminal_peak"), "current"
+        (
+            "symmetrical", "peak", "peak_exact", "terminal_symmetrical", "terminal_peak", "short_time_current",
+            "peak_current",
+        ),
+        "current",
     ),
     "density": "current density",
     "temperature": "temperature",
@@ -51,6 +55,9 @@ KINDS_OF_RESULTS = {
     "buckling": "number",
     "frequency": "frequency",
 }  # fmt: skip
+#: what an id of apparatus names after its family, and what it ends with
+APPARATUS = ("tap_changer", "bushings", "neutral")
+PROVEN = ("short_time_current", "peak_current")
 _SUFFIXES = ("_envelope", "_redistributed")
 
 
@@ -69,8 +76,9 @@ def limits(file: UnitFile) -> Iterator[Fault]:
         yield from _known(file, result, path)
         if isinstance(limit.value, Quantity):
             yield from _fitting(result, limit.value, (*path, "value"))
-        elif isinstance(limit.value, ProofStressShare) and _kind(result) not in {"stress", None}:
-            text = f"is a share of Rp0.2, but '{result}' is of kind {_kind(result)}."
+        elif isinstance(limit.value, ProofStressShare) and kind_of_result(result) != "stress":
+            kind = kind_of_result(result) or "unknown"
+            text = f"is a share of Rp0.2, but '{result}' is of kind {kind}."
             yield Fault((*path, "value"), text)
 
 
@@ -79,10 +87,27 @@ def _known(file: UnitFile, result: str, path: KeyPath) -> Iterator[Fault]:
     if family not in FAMILIES:
         yield Fault(path, f"is not a result: '{family}' is no family of results{unknown_name(family, FAMILIES)}")
         return
+    if family == "apparatus":
+        yield from _apparatus(file, result, path)
     names = _names(file, FAMILIES[family])
     if names and name not in names and not (family == "strength" and name == "clamping"):
         wanted = FAMILIES[family]
         yield Fault(path, f"is not a result: '{name}' is not a {wanted}{unknown_name(name, dict.fromkeys(names))}")
+
+
+def _apparatus(file: UnitFile, result: str, path: KeyPath) -> Iterator[Fault]:
+    """Compare an id such as ``apparatus.bushings.HV.peak_current`` with what the file can have."""
+    _, name, *rest = result.split(".")
+    if name not in APPARATUS:
+        yield Fault(path, f"is not a result: '{name}' is no apparatus{unknown_name(name, APPARATUS)}")
+        return
+    if name != "tap_changer":
+        winding, rest = (rest or [""])[0], rest[1:]
+        if winding not in file.windings:
+            yield Fault(path, f"is not a result: '{winding}' is not a winding{unknown_name(winding, file.windings)}")
+    last = ".".join(rest)
+    if last not in PROVEN:
+        yield Fault(path, f"is not a result: '{last}' is nothing apparatus is proven for{unknown_name(last, PROVEN)}")
 
 
 def _names(file: UnitFile, wanted: str) -> list[str]:
@@ -98,7 +123,8 @@ def _names(file: UnitFile, wanted: str) -> list[str]:
     }.get(wanted, [])
 
 
-def _kind(result: str) -> str | None:
+def kind_of_result(result: str) -> str | None:
+    """Return the kind of quantity that a result id promises; None where the kit knows no such result."""
     if result.startswith("duty.neutral."):
         return "current"
     last = result.rsplit(".", 1)[-1]
@@ -108,7 +134,7 @@ def _kind(result: str) -> str | None:
 
 
 def _fitting(result: str, quantity: Quantity, path: KeyPath) -> Iterator[Fault]:
-    kind = _kind(result)
+    kind = kind_of_result(result)
     if kind is not None and quantity.kind != kind:
         units = ", ".join(unit for unit, (k, _) in UNITS.items() if k == kind)
         wanted = "a bare number" if kind == "number" else f"a {kind} (unit one of {units})"

@@ -56,6 +56,18 @@ def resistance_below_impedance(file: UnitFile, index: int) -> Iterator[Fault]:
         yield Fault(("impedances", index, key), text)
 
 
+def resistance_below_reduced_impedance(file: UnitFile, index: int) -> Iterator[Fault]:
+    """See that the tolerance leaves a reactance."""
+    row = file.impedances[index]
+    if row.tolerance is None:
+        return
+    resistance, impedance = row.resistance_value.to("%"), row.impedance.to("%")
+    reduced = impedance * (1.0 - row.tolerance.to("p.u."))
+    if reduced <= resistance < impedance:  # a resistance above the impedance itself is a fault of its own
+        text = f"leaves an impedance of {reduced:.4g} %, which must be above the resistance, {resistance:.4g} %"
+        yield Fault(("impedances", index, "tolerance"), f"{text}, got {row.tolerance}.")
+
+
 def resistance_and_loss(file: UnitFile, index: int) -> Iterator[Fault]:
     """Compare resistance with load loss where both are given."""
     row = file.impedances[index]
@@ -155,6 +167,7 @@ ROW_CHECKS = (
     known_windings,
     known_tapping,
     resistance_below_impedance,
+    resistance_below_reduced_impedance,
     resistance_and_loss,
     direct_below_alternating,
     zero_sequence_path,

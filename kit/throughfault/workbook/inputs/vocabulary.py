@@ -6,7 +6,7 @@ from pydantic import Field
 from pydantic.config import JsonDict
 
 from throughfault.quantities import Quantity
-from throughfault.workbook.inputs.leaves import NAME, Count, Flag, Match, Number, OneOf, Text
+from throughfault.workbook.inputs.leaves import NAME, Count, Flag, Match, OneOf, Text
 from throughfault.workbook.inputs.measures import Measure
 
 #: where a user finds a value
@@ -56,7 +56,6 @@ Title = Annotated[str, Text()]
 Name = Annotated[str, Match(NAME, "at most 16 letters, digits and underscores, first a letter")]
 Yes = Annotated[bool, Flag()]
 Whole = Annotated[int, Count()]
-Ratio = Annotated[float, Number()]
 Voltage = Annotated[Quantity, Measure("kV")]
 Current = Annotated[Quantity, Measure("kA")]
 Power = Annotated[Quantity, Measure("MVA")]
