@@ -53,54 +53,70 @@ def _all(
     terminals: Mapping[str, Currents],
     neutrals: Mapping[str, Currents],
 ) -> Iterator[Check]:
-    tapped = [name for name, winding in unit.windings.items() if winding.tappings]
+    tapped = {name: windings.get(name) for name, winding in unit.windings.items() if winding.tappings}
     if unit.tap_changer is not None and tapped:
-        yield from _pair(unit, rules, "tap_changer", tapped[0], unit.tap_changer, windings.get(tapped[0]))
+        yield from _pair(unit, rules, "tap_changer", unit.tap_changer, tapped)
     for name, proven in unit.bushings.items():
-        yield from _pair(unit, rules, f"bushings.{name}", name, proven, terminals.get(name))
+        yield from _pair(unit, rules, f"bushings.{name}", proven, {name: terminals.get(name)})
     for name, proven in unit.neutral.items():
-        yield from _pair(unit, rules, f"neutral.{name}", name, proven, neutrals.get(name))
+        yield from _pair(unit, rules, f"neutral.{name}", proven, {name: neutrals.get(name)})
 
 
 def _pair(
-    unit: Unit, rules: RuleSet, key: str, winding: str, proven: Withstand, current: Currents | None
+    unit: Unit, rules: RuleSet, key: str, proven: Withstand, currents: Mapping[str, Currents | None]
 ) -> Iterator[Check]:
-    """Yield the thermal and the peak check of one apparatus."""
+    """Yield the thermal and the peak check of one apparatus, by the winding whose current tries it most."""
     if proven.short_time_current is not None:
-        stated = unit.fault_duration(winding)
-        duration = stated.to("s") if stated is not None else rules.fault_duration(None, None).value
-        limit = _limit(_permitted(proven, duration), f"unit file, {key}.short_time_current")
-        value, case = (current.symmetrical, current.symmetrical_case) if current else (None, None)
-        yield _check(unit, f"{key}.short_time_current", value, limit, "thermal", case)
+        name = f"{key}.short_time_current"
+        made = (
+            _check(
+                unit,
+                name,
+                _short_time(proven, proven.short_time_current, _duration(unit, rules, winding), name),
+                "thermal",
+                (found.symmetrical, found.symmetrical_case) if found else (None, None),
+            )
+            for winding, found in currents.items()
+        )
+        yield max(made, key=_severity)
     if proven.peak_current is not None:
-        limit = _limit(proven.peak_current.to("kA"), f"unit file, {key}.peak_current")
-        value, case = (current.peak, current.peak_case) if current else (None, None)
-        yield _check(unit, f"{key}.peak_current", value, limit, "dynamic", case)
+        name = f"{key}.peak_current"
+        limit = Limit(proven.peak_current.to("kA"), "kA", "at most", f"unit file, {name}", "maker")
+        peaks = ((found.peak, found.peak_case) if found else (None, None) for found in currents.values())
+        yield max((_check(unit, name, limit, "dynamic", peak) for peak in peaks), key=_severity)
 
 
-def _permitted(proven: Withstand, duration: float | None) -> float:
-    """Return the short-time current for the fault's duration in kA: the heat integral is kept for a longer fault."""
-    current = proven.short_time_current.to("kA") if proven.short_time_current is not None else 0.0
+def _severity(check: Check) -> float:
+    """Order checks by utilisation; one that exceeds comes before one that could not be assessed, that before others."""
+    used = check.utilisation
+    return 1.0 + 1e-12 if used is None else used
+
+
+def _duration(unit: Unit, rules: RuleSet, winding: str) -> float | None:
+    stated = unit.fault_duration(winding)
+    return stated.to("s") if stated is not None else rules.fault_duration(None, None).value
+
+
+def _short_time(proven: Withstand, current: Quantity, duration: float | None, name: str) -> Limit:
+    """Return the short-time current for the fault's duration: the heat integral is kept for a longer fault."""
+    source = f"unit file, {name}"
     proven_for = proven.duration.to("s") if proven.duration is not None else None
     if proven_for is None or duration is None or duration <= proven_for:
-        return current
-    return current * math.sqrt(proven_for / duration)
-
-
-def _limit(value: float, source: str) -> Limit:
-    return Limit(value, "kA", "at most", source, "maker")
+        return Limit(current.to("kA"), "kA", "at most", source, "maker")
+    permitted = current.to("kA") * math.sqrt(proven_for / duration)
+    return Limit(permitted, "kA", "at most", f"{source}, heat integral kept for the longer fault", "derived")
 
 
 def _check(
     unit: Unit,
     name: str,
-    value: float | None,
     limit: Limit,
     ability: Literal["thermal", "dynamic"],
-    case: str | None,
+    current: tuple[float | None, str | None],
 ) -> Check:
     given = unit.limits.get(f"apparatus.{name}")
     if given is not None and isinstance(given.value, Quantity):
         limit = limit.replaced(given.value, given.source)
+    value, case = current
     reason = None if value is not None else "no case could be run for the current through it"
     return Check(f"apparatus.{name}", value, "kA", limit, ability, case, reason)
