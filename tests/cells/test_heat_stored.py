@@ -6,18 +6,14 @@ from hypothesis import strategies as st
 from scipy.integrate import solve_ivp
 
 from throughfault.cells import heat_stored
+from throughfault.cells.heat_content import heat_content_copper, start_eddy_share, start_loss
 from throughfault.cells.heat_stored import (
     final_temperature_all_heat_stored,
     final_temperature_exponential,
     final_temperature_series,
-    heat_content_aluminium,
-    heat_content_copper,
-    heating_ratio,
     permissible_duration_heat_stored,
     permitted_heating_ratio_exponential,
     permitted_heating_ratio_series,
-    start_eddy_share,
-    start_loss,
 )
 from throughfault.errors import OutsideValidity
 from throughfault.tables import table
@@ -51,27 +47,6 @@ def test_series_form_leaves_the_exponential_above_its_range():
     series = 0.8 * (1 + 0.1 + 0.6 * 0.8)
     assert series == pytest.approx(1.264)
     assert (final_temperature_exponential(0.0, 234.5, 0.8, 0.1)) / 234.5 == pytest.approx(1.313, abs=0.0005)
-
-
-def test_heat_contents_are_those_of_the_table():
-    """heat_content_copper and heat_content_aluminium carry the digits of the table."""
-    for material, cell in (("copper", heat_content_copper), ("aluminium", heat_content_aluminium)):
-        row = table("ieee_c57_12_00_2015_heat_content").row(material=material)
-        assert cell(0.0, 0.0, 0.0, 1.0) == row["base"]
-        assert cell(100.0, 0.0, 0.0, 1.0) - row["base"] == pytest.approx(100 * row["slope"])
-        assert cell(0.0, 0.0, 1.0, 1.0) - row["base"] == pytest.approx(row["insulation"])
-
-
-def test_eddy_share_is_unchanged_at_the_reference_temperature():
-    """start_eddy_share at its own reference, and lower when hotter."""
-    assert start_eddy_share(0.1, 85.0, 85.0, 234.5) == pytest.approx(0.1)
-    assert start_eddy_share(0.1, 85.0, 110.0, 234.5) < 0.1
-
-
-def test_ratio_of_one_doubles_the_resistance():
-    """heating_ratio is one when the starting loss alone would double the temperature above zero resistance."""
-    content = heat_content_copper(110.0, 110.0, 0.0, 1.0)
-    assert heating_ratio(content * 344.5 / 2.0, 2.0, content, 110.0, 234.5) == pytest.approx(1.0)
 
 
 @given(st.floats(5.0, 250.0), SHARES)

@@ -8,11 +8,13 @@ from typing import Annotated
 from throughfault import nomenclature as nom
 from throughfault.declare import Condition, Range, cell
 from throughfault.sources import Source
+from throughfault.tables import table
 
 AVERAGE = Source("IEC60076-5:2006", "4.1.5", "recalled")
 INVERTED = Source("IEC60076-5:2006", "4.1.5, solved for the duration", "derived")
 HEAT = "HeatBalance"
-DURATION = Range("duration", above=0.0, at_most=10.0)
+ADIABATIC_TO: float = table("iec60076_5_2006_duration").rows[0]["adiabatic_to"]  # s, all heat taken as stored
+DURATION = Range("duration", above=0.0, at_most=ADIABATIC_TO)
 DENSITY = Range("current_density", above=0.0)
 START = Range("initial_temperature", at_least=-60.0, at_most=400.0)
 ABOVE_START = Condition(
@@ -95,7 +97,7 @@ def permissible_duration_copper(
     current_density: Annotated[float, nom.current_density],
     permitted_temperature: Annotated[float, nom.permitted_temperature],
 ) -> Annotated[float, nom.permissible_duration]:
-    """Solve the average-temperature form for the duration; above 10 s the result is on the safe side."""
+    """Solve the average-temperature form for the duration; the form holds for results up to 10 s."""
     theta_0, J, theta_2 = initial_temperature, current_density, permitted_temperature
     return 106000 / J**2 / (1 + 2 * (theta_0 + 235) / (theta_2 - theta_0))
 
@@ -111,7 +113,7 @@ def permissible_duration_aluminium(
     current_density: Annotated[float, nom.current_density],
     permitted_temperature: Annotated[float, nom.permitted_temperature],
 ) -> Annotated[float, nom.permissible_duration]:
-    """Solve the average-temperature form for the duration; above 10 s the result is on the safe side."""
+    """Solve the average-temperature form for the duration; the form holds for results up to 10 s."""
     theta_0, J, theta_2 = initial_temperature, current_density, permitted_temperature
     return 45700 / J**2 / (1 + 2 * (theta_0 + 225) / (theta_2 - theta_0))
 

@@ -103,11 +103,49 @@ def test_iec_form_decides_under_iec():
 @pytest.mark.parametrize("standard", [(), (IEEE,)], ids=["IEC", "IEEE"])
 def test_temperature_at_the_permissible_duration_is_the_limit(standard):
     """Running the fault for the permissible duration ends at the limit, by the form that decides."""
-    first = assessed(*standard)
+    first = assessed(*standard, duty=duty_of(HV=1.5, LV=3.9))
     for name in ("HV", "LV"):
         duration = first.windings[name].permissible_duration
-        again = assessed(*standard, ('fault_duration = "2 s"', f'fault_duration = "{duration!r} s"'))
+        changed = ('fault_duration = "2 s"', f'fault_duration = "{duration!r} s"')
+        again = assessed(*standard, changed, duty=duty_of(HV=1.5, LV=3.9))
         assert again.windings[name].temperature == pytest.approx(first.windings[name].limit.value, rel=1e-9)
+
+
+@pytest.mark.parametrize("standard", [(), (IEEE,)], ids=["IEC", "IEEE"])
+def test_a_permissible_duration_beyond_the_form_is_not_given(standard):
+    """Where the limit is reached after more than 10 s there is the reason and no number; the curve ends at 10 s."""
+    thermal = assessed(*standard, duty=duty_of(HV=0.5, LV=3.4))
+    found = outcomes(thermal)["thermal.HV.permissible_duration"]
+    assert (found.value, found.reason) == (None, "longer than the 10 s for which the adiabatic form holds")
+    hv = thermal.windings["HV"]
+    assert (hv.permissible_duration, hv.check.verdict) == (None, "within")
+    assert not [step for step in thermal.fragment.steps if step.id.startswith(found.id)]
+    assert hv.curve["time"][-1] == 10.0
+
+
+@pytest.mark.parametrize("standard", [(), (IEEE,)], ids=["IEC", "IEEE"])
+def test_a_dry_unit_has_no_second_fault(standard):
+    """The cooling that is tabled is that of windings in liquid."""
+    dry = (('immersion = "oil"', 'immersion = "dry"'), ("thermal_class = 105", "thermal_class = 180"))
+    thermal = assessed(*standard, *dry)
+    assert thermal.windings["LV"].temperature is not None
+    assert thermal.windings["LV"].shots is None
+    assert not [name for name in outcomes(thermal) if "reclosing" in name]
+
+
+def test_the_limit_of_a_dry_unit_is_another_standards():
+    """Under IEEE C57.12.00 the limit of a dry-type unit comes from C57.12.01, which is said; a signatory's own is not."""
+    dry = (('immersion = "oil"', 'immersion = "dry"'), ("thermal_class = 105", "thermal_class = 180"))
+    points = {point.id: point for point in assessed(IEEE, *dry).fragment.open_points}
+    assert points["thermal.LV.limit"].text == (
+        "LV: the limit is the dry-type standard's, the form of the temperature the liquid-immersed standard's."
+    )
+    assert points["thermal.LV.limit"].clause == "IEEEC57.12.01, temperature limits"
+    assert "thermal.HV.limit" in points  # not assessed for its eddy share, and the limit is still that one
+    own = '[limits]\n"thermal.LV.temperature" = { value = "350 degC", source = "own" }\n[windings.HV]'
+    settled = assessed(IEEE, *dry, ("[windings.HV]", own))
+    assert "thermal.LV.limit" not in {point.id for point in settled.fragment.open_points}
+    assert not [p.id for p in assessed(*dry).fragment.open_points if p.id.endswith(".limit")]
 
 
 def test_ieee_form_decides_under_ieee():
@@ -132,6 +170,7 @@ def test_exponential_form_above_its_ratio():
     high = assessed(
         IEEE,
         ("[windings.HV]", '[limits]\n"thermal.HV.temperature" = { value = "450 degC", source = "own" }\n[windings.HV]'),
+        duty=duty_of(HV=3.3, LV=3.4),
     )
     ratio = [s.cell.name for s in high.fragment.steps if s.id == "thermal.HV.permissible_duration.heating_ratio"]
     assert ratio == ["permitted_heating_ratio_exponential"]
@@ -405,6 +444,19 @@ def test_through_fault_curve_by_category(power, current, category, frequent, las
     assert (curve.mechanical is None) == (category == "I")
     if category == "I":
         assert curve.reason == "the category has one curve, without a mechanical part"
+
+
+@pytest.mark.parametrize(("power", "current", "category"), [("4 MVA", 0.7, "II"), ("40 MVA", 8.0, "IV")])
+def test_thermal_part_runs_to_the_greatest_current(power, current, category):
+    """Beyond 25 times base the thermal part goes on along 1250/I^2 to the unit's own greatest multiple."""
+    thermal = assessed(("40 MVA", power), ("180 kW", "3 kW"), duty=duty_of(HV=current, LV=current))
+    curve = thermal.through_fault
+    greatest = max(p.multiple for p in curve.points)
+    assert greatest > 25.0
+    assert curve.category == category
+    assert curve.thermal[0][-1] == greatest
+    assert curve.thermal[1][-1] == pytest.approx(1250 / greatest**2)
+    assert list(curve.thermal[0]) == sorted(curve.thermal[0])
 
 
 @pytest.mark.parametrize(

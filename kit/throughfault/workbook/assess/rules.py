@@ -78,11 +78,15 @@ class PeakFactor:
 
 @dataclass(frozen=True, slots=True)
 class LimitOrReason:
-    """A limit, or the reason why the standard gives none and the key that would settle it."""
+    """A limit, or the reason why the standard gives none and the key that would settle it.
+
+    ``note`` says what a reviewer must know of a limit that there is.
+    """
 
     limit: Limit | None
     reason: str = ""
     key: str = ""
+    note: str = ""
 
 
 class RuleSet(Protocol):

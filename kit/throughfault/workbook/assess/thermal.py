@@ -35,6 +35,7 @@ LABELS = {
     "offset": "exact, with decaying offset",
     "other": "form of the other standard, from the same start",
 }
+LONGER = f"longer than the {withstand.ADIABATIC_TO:g} s for which the adiabatic form holds"
 BEYOND = 1.25  # plots run this much beyond the duration or the permissible duration
 
 
@@ -103,7 +104,7 @@ def assess_thermal(unit: Unit, rules: RuleSet, duty: DutyLike) -> Thermal:
     windings = {name: _winding(unit, rules, name, duty) for name in unit.windings}
     multiples = {name: w.multiple for name, w in windings.items()}
     durations = {name: w.duration for name, w in windings.items()}
-    curve = assess_through_fault(unit, rules, multiples, durations)
+    curve = assess_through_fault(unit, multiples, durations)
     parts = [*(w.fragment for w in windings.values()), curve.fragment]
     return Thermal(rules.thermal_method, rules.start_is, windings, curve, _joined(parts))
 
@@ -183,7 +184,8 @@ def _not_assessed(common: _Common, limit: LimitOrReason, missing: Missing, steps
         for what, unit, symbol in (("density", "A/mm^2", "J"), ("temperature", "degC", r"\theta_1"))
     )
     quantities = (*common.outcomes, *_multiple_outcome(common, steps), *none)
-    fragment = Fragment(quantities, tuple(steps), (check,), missing=(missing,))
+    points = _limit_points(common.winding, limit)
+    fragment = Fragment(quantities, tuple(steps), (check,), missing=(missing,), open_points=points)
     return _made(common, limit.limit, check, fragment=fragment)
 
 
@@ -203,6 +205,7 @@ def _assessed(
     results = (first, temperature, allowed, *(outcome for _, outcome in shown.values()), *last)
     quantities = (*common.outcomes, *_multiple_outcome(common, steps), *results)
     every = (*steps, density, *found, *more, *(step for s in beside.values() for step in s), *again)
+    points = (*_limit_points(given.winding, limit), *_points(given, check, shown))
     return _made(
         common, limit.limit, check,
         density=density.result.value,
@@ -211,14 +214,15 @@ def _assessed(
         comparisons=shown,
         curve=_curve(given, density, common.method, allowed, beside),
         shots=shots,
-        fragment=Fragment(quantities, every, (check,), missing=missing, open_points=_points(given, check, shown)),
+        fragment=Fragment(quantities, every, (check,), missing=missing, open_points=points),
     )  # fmt: skip
 
 
 def _curve(
     given: HeatInputs, density: Step, method: str, allowed: Outcome, beside: dict[str, tuple[Step, ...]]
 ) -> dict[str, Floats]:
-    until = BEYOND * max(given.duration.to("s"), allowed.value or 0.0)
+    longest = withstand.ADIABATIC_TO if allowed.reason == LONGER else allowed.value or 0.0
+    until = BEYOND * max(given.duration.to("s"), longest)
     constant = beside["offset"][0].result.value if "offset" in beside else None
     return curve_of(given, density.result.value, method, until, constant)
 
@@ -244,6 +248,8 @@ def _permissible(
         steps = METHODS[common.method].permissible(given, density, limit, id_)
     except OutsideValidity as outside:
         return _outside(id_, "s", r"t_{\max}", given.case, outside), ()
+    if steps[-1].result.to("s") > withstand.ADIABATIC_TO:
+        return _outside(id_, "s", r"t_{\max}", given.case, OutsideValidity(LONGER)), ()
     return Outcome.of_step(steps[-1], governing_case=given.case), steps
 
 
@@ -260,6 +266,12 @@ def _check(temperature: Outcome, limit: LimitOrReason, case: str | None) -> tupl
     elif not limit.limit.decides:
         reason = reason or "the recalled limit is uncertain; a signatory's own figure is needed"
     return Check(temperature.id, temperature.value, "degC", limit.limit, "thermal", case, reason), missing
+
+
+def _limit_points(winding: str, limit: LimitOrReason) -> tuple[OpenPoint, ...]:
+    if limit.limit is None or not limit.note:
+        return ()
+    return (OpenPoint(f"thermal.{winding}.limit", f"{winding}: {limit.note}.", clause=limit.limit.source),)
 
 
 def _points(given: HeatInputs, check: Check, shown: dict[str, tuple[str, Outcome]]) -> tuple[OpenPoint, ...]:

@@ -56,6 +56,7 @@ class HeatInputs:
 
     winding: str
     case: str | None
+    immersion: str
     material: str
     current: Quantity
     section: Quantity
@@ -115,6 +116,7 @@ def heat_inputs(unit: Unit, rules: RuleSet, winding: str, duties: DutyLike, dura
     return HeatInputs(
         winding=winding,
         case=duty.symmetrical_case,
+        immersion=unit.rating.immersion,
         material=material,
         current=Quantity(duty.symmetrical, "kA"),
         section=section,

@@ -7,6 +7,7 @@ from dataclasses import dataclass
 
 import numpy as np
 
+from throughfault.cells import heat_content
 from throughfault.cells import heat_stored as stored
 from throughfault.cells import thermal_withstand as withstand
 from throughfault.cells.fault_current import offset_time_constant
@@ -30,12 +31,11 @@ AVERAGE_DURATION: dict[str, StepCell] = {
     "aluminium": withstand.permissible_duration_aluminium,
 }
 HEAT_CONTENT: dict[str, StepCell] = {
-    "copper": stored.heat_content_copper,
-    "aluminium": stored.heat_content_aluminium,
+    "copper": heat_content.heat_content_copper,
+    "aluminium": heat_content.heat_content_aluminium,
 }
 POINTS = 80
 SHORT_OF_THE_POLE = 0.8  # of the thermal constant, where the average form ends on a plot
-LONGEST = 10.0  # s, to which all heat is taken as stored
 
 
 @dataclass(frozen=True, slots=True)
@@ -87,14 +87,14 @@ def _start(given: HeatInputs, density: Step, id_: str) -> _Start:
     material = table("conductor_material").row(material=given.material)
     offset = table("ieee_c57_12_00_2015_heat_content").row(material=given.material)["temperature_offset"]
     at = {"start_temperature": given.start, "temperature_offset": Quantity(offset, "K")}
-    loss = stored.start_loss.step(
+    loss = heat_content.start_loss.step(
         f"{id_}.start_loss",
         current_density=density.result,
         resistivity_20=Quantity(material["resistivity_20"], "uohm m"),
         density=Quantity(material["density"], "kg/m^3"),
         **at,
     )
-    share = stored.start_eddy_share.step(
+    share = heat_content.start_eddy_share.step(
         f"{id_}.start_eddy_share",
         eddy_share=Quantity(given.eddy_share, "1"),
         reference_temperature=given.reference or given.start,
@@ -134,7 +134,7 @@ def _stored(given: HeatInputs, density: Step, id_: str) -> tuple[Step, ...]:
     start = _start(given, density, id_)
     final = final_temperature(given, density.result.value, given.duration.to("s"))
     content = _content(given, Quantity(final, "degC"), id_)
-    ratio = stored.heating_ratio.step(
+    ratio = heat_content.heating_ratio.step(
         f"{id_}.heating_ratio",
         start_loss=start.loss.result,
         duration=given.duration,
@@ -246,7 +246,7 @@ def curve_of(
     """Return ``time`` (s) and, in degC, ``standard``, ``exact`` and, with a time constant, ``offset`` for a plot."""
     material = conductor_of(given)
     start = given.start.to("degC")
-    end = min(until, LONGEST, SHORT_OF_THE_POLE * material.constant / density**2)
+    end = min(until, withstand.ADIABATIC_TO, SHORT_OF_THE_POLE * material.constant / density**2)
     time = np.linspace(0.0, end, POINTS)
     made = {"time": time, "exact": exact_temperature(start, density**2 * time, material)}
     if method == "average temperature":

@@ -21,11 +21,11 @@ from throughfault.errors import OutsideValidity
 from throughfault.numerics.case import Floats
 from throughfault.quantities import Quantity
 from throughfault.tables import table
-from throughfault.workbook.assess.rules import RuleSet, Tabled, category_of
+from throughfault.workbook.assess.rules import Tabled, category_of
 from throughfault.workbook.assess.rules_ieee import IEEEC57_12_00_2015
 from throughfault.workbook.inputs import Unit
 
-__all__ = ["OwnPoint", "ThroughFault", "assess_through_fault", "category_of"]
+__all__ = ["OwnPoint", "ThroughFault", "assess_through_fault"]
 
 POINTS = 60
 
@@ -68,24 +68,24 @@ class ThroughFault:
     fragment: Fragment = field(default_factory=Fragment)
 
 
-def _thermal(category: str | None) -> tuple[Floats, Floats]:
+def _thermal(category: str | None, greatest: float) -> tuple[Floats, Floats]:
+    """Return the thermal part: the tabled points, and on by the constant heat integral to the category's end."""
     rows = table("ieee_c57_109_2018_thermal_curve").column("multiple")
     multiples = np.unique(np.concatenate([np.geomspace(rows[0], rows[-1], POINTS), rows]))
     multiples = np.clip(multiples, rows[0], rows[-1])  # the ends of a geometric row are rounded
     durations = thermal_curve_duration(multiples)
     ends = {row["category"]: row["multiple_to"] for row in table("ieee_c57_109_2018_category").rows}
-    last = ends.get(category) if category is not None else None
-    if last is not None:
+    last = None if category is None else ends[category] or greatest
+    if last is not None and last > rows[-1]:
         multiples = np.append(multiples, last)
         durations = np.append(durations, thermal_duration(last))
     return multiples, durations
 
 
 def assess_through_fault(
-    unit: Unit, rules: RuleSet, multiples: Mapping[str, float | None], durations: Mapping[str, Tabled]
+    unit: Unit, multiples: Mapping[str, float | None], durations: Mapping[str, Tabled]
 ) -> ThroughFault:
     """Draw the curve of the unit's IEEE category; under another standard it stands for comparison only."""
-    del rules
     category = category_of(unit, IEEEC57_12_00_2015).name
     known = {name: m for name, m in multiples.items() if m is not None and not unit.windings[name].stabilising}
     points = tuple(
@@ -93,7 +93,8 @@ def assess_through_fault(
         for name, m in multiples.items()
         if m is not None and (d := durations[name].value) is not None
     )
-    thermal = _thermal(category)
+    greatest = max(known.values(), default=0.0)
+    thermal = _thermal(category, greatest)
     shares = {row["category"]: row for row in table("ieee_c57_109_2018_category").rows}
     if category is None or not known:
         why = "the rated power lies below the first category" if category is None else "no current is assessed"
@@ -101,7 +102,7 @@ def assess_through_fault(
     if shares[category]["mechanical_from"] is None:
         why = "the category has one curve, without a mechanical part"
         return ThroughFault(category, thermal, points=points, reason=why)
-    return _with_mechanical(category, shares[category], max(known.values()), thermal, points)
+    return _with_mechanical(category, shares[category], greatest, thermal, points)
 
 
 def _with_mechanical(
