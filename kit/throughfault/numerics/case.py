@@ -113,19 +113,17 @@ class Cases:
         NetworkError
             Shapes or values do not describe a network; all faults in one sentence.
         """
-        at = np.asarray(at, np.intp)
-        voltage = np.asarray(voltage, np.float64)
-        given = {
-            "voltage": voltage, "base_power": base_power, "z1": z1, "z0": z1 if z0 is None else z0, "fault": fault,
-            "at": at, "prefault": np.nan if prefault is None else prefault, "frequency": frequency,
-            "source_z1": source_z1, "source_z2": source_z1 if source_z2 is None else source_z2,
-            "source_z0": source_z0, "neutral": neutral, "magnetising": magnetising,
-            "fault_impedance": fault_impedance, "step": step,
-        }  # fmt: skip
-        cases = cls(**_broadcast(given, len(transformer.windings)))
+        return cls._checked(transformer, locals())
+
+    @classmethod
+    def _checked(cls, transformer: Transformer, given: dict[str, Any]) -> Self:
+        instead = {"z0": given["z1"], "source_z2": given["source_z1"], "prefault": np.nan}
+        names = [field.name for field in fields(cls)]
+        filled = {name: instead.get(name) if given[name] is None else given[name] for name in names}
+        cases = cls(**_broadcast(filled, len(transformer.windings)))
         if outside := _outside(cases, len(transformer.windings)):
             raise NetworkError(outside)
-        if prefault is None:
+        if given["prefault"] is None:
             phase = cases.at_fault(cases.voltage) / np.sqrt(transformer.phases)
             cases = cls(**{**cases._columns(), "prefault": phase})
         if faults := _faults(transformer, cases):

@@ -86,15 +86,14 @@ def repeated_shots(
     points
         Points on each shot and each pause.
     """
-    time, temperature, ends = [np.zeros(1)], [np.full(1, start)], []
+    run, rest = (np.linspace(0.0, length, points)[1:] for length in (duration, pause))
+    time, temperature = [np.zeros(1)], [np.full(1, start)]
+    ends: list[float] = []
     for shot in range(count):
-        began, at = time[-1][-1], float(temperature[-1][-1])
-        run = np.linspace(0.0, duration, points)[1:]
-        time.append(began + run)
-        temperature.append(exact_temperature(at, density**2 * run, conductor))
-        ends.append(float(temperature[-1][-1]))
-        if shot + 1 < count:
-            rest = np.linspace(0.0, pause, points)[1:]
-            time.append(began + duration + rest)
+        if shot:
+            time.append(time[-1][-1] + rest)
             temperature.append(start + (ends[-1] - start) * np.exp(-rest / cooling))
+        time.append(time[-1][-1] + run)
+        temperature.append(exact_temperature(float(temperature[-1][-1]), density**2 * run, conductor))
+        ends.append(float(temperature[-1][-1]))
     return Shots(np.concatenate(time), np.concatenate(temperature), np.asarray(ends))

@@ -13,7 +13,7 @@ from numpy.typing import ArrayLike
 from throughfault.numerics.case import Cases, Complexes, Floats
 from throughfault.numerics.connection import Transformer
 
-__all__ = ["coil_drops", "coil_voltages", "magnetising_path", "star_impedances"]
+__all__ = ["coil_drops", "coil_voltages", "magnetising_path"]
 
 
 def coil_voltages(transformer: Transformer, voltage: Floats) -> Floats:
@@ -93,8 +93,3 @@ def magnetising_path(z0: ArrayLike, at: int, z_m: ArrayLike) -> Complexes:
     column[..., at] = 0.0
     result: Complexes = column + np.asarray(z_m, np.complex128)[..., None]
     return result
-
-
-def star_impedances(z_12: complex, z_13: complex, z_23: complex) -> tuple[complex, complex, complex]:
-    """Return the legs of the equivalent star of three windings from their pairwise impedances, all on one base."""
-    return (z_12 + z_13 - z_23) / 2, (z_12 + z_23 - z_13) / 2, (z_13 + z_23 - z_12) / 2

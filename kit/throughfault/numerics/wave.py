@@ -47,13 +47,19 @@ def first_maximum(x_over_r: ArrayLike) -> Floats:
     # d/dx [sin(x - phi) + sin(phi) exp(-x cot(phi))] = cos(x - phi) - cos(phi) exp(-x cot(phi)) = 0
     with np.errstate(over="ignore"):  # next to no reactance: the d.c. part is gone at once
         rate = np.divide(cosine, sine, out=np.full(ratio.shape, np.inf), where=sine > 0)
+    x = _crest(phi, rate)
+    return np.asarray(np.sqrt(2) * (np.sin(x - phi) + sine * np.exp(-x * rate)))
+
+
+def _crest(phi: Floats, rate: Floats) -> Floats:
+    """Return the phase of the first maximum by Newton's method, begun at the crest of the alternating part."""
     x = phi + np.pi / 2
+    cosine = np.cos(phi)
     for _ in range(_STEPS):
         decay = np.exp(-x * rate)
         slope = -np.sin(x - phi) + np.where(decay > 0, cosine * np.where(decay > 0, rate, 0.0) * decay, 0.0)
         x = x - (np.cos(x - phi) - cosine * decay) / slope
-    decay = np.exp(-x * rate)
-    return np.asarray(np.sqrt(2) * (np.sin(x - phi) + sine * decay))
+    return np.asarray(x)
 
 
 def heat_integral(
