@@ -221,7 +221,64 @@ def test_defaults_are_named():
         "system.LV.voltage": "69 kV",
         "system.HV.voltage": "230 kV",
         "earthing.HV": "solid",
+        "impedances.zero_sequence": "equal to the impedance",
     }
+
+
+GIVEN = [(f'zero_sequence = "{value} %"\n', "") for value in (11.2, 11.5, 10.9)]
+MAGNETISING = ('[zero_sequence]\nat = "HV"\nmagnetising = "55 %"\n', "")
+
+
+@pytest.mark.parametrize(
+    ("edits", "words"),
+    [
+        ([], None),
+        (GIVEN[:1], "between 0.85 and 1 times the impedance, both run"),
+        (GIVEN, "between 0.85 and 1 times the impedance, both run"),
+        ([*GIVEN, ('core = "three-limb"', 'core = "five-limb"')], "equal to the impedance"),
+        ([*GIVEN, ('HV = "5 ohm + 12j ohm"', 'HV = "isolated"')], None),
+        (
+            [
+                *GIVEN,
+                MAGNETISING,
+                ("YNd11", "Yd11"),
+                ("[neutral.HV]", "[bushings.LV]"),
+                ("[earthing]\nHV", "[earthing]\n#"),
+            ],
+            None,
+        ),
+    ],
+)
+def test_what_stands_for_the_zero_sequence_impedance(change, edits, words):
+    """What is taken for it is named where a current can reach earth, and only there."""
+    found = {d.path: d.value for d in change(*edits).defaults}
+    assert found.get("impedances.zero_sequence") == words
+
+
+TWO_STARS = """
+format = "throughfault-unit/1"
+standard = "IEC 60076-5:2006"
+identity = { tag = "X", title = "Brackwater Vale" }
+rating = { phases = 3, frequency = "50 Hz", vector_group = "YNyn0", immersion = "oil", core = "three-limb" }
+[windings]
+HV = { rated_power = "1 MVA", rated_voltage = "11 kV" }
+LV = { rated_power = "1 MVA", rated_voltage = "400 V" }
+[[impedances]]
+between = ["HV", "LV"]
+impedance = "5 %"
+base_power = "1 MVA"
+load_loss = "10 kW"
+"""
+
+
+@pytest.mark.parametrize(
+    ("more", "words"), [("", None), ('[zero_sequence]\nat = "LV"\nmagnetising = "55 %"\n', "equal to the impedance")]
+)
+def test_a_three_limb_unit_without_a_delta_needs_its_magnetising_impedance(more, words):
+    """Without it the faults to earth are not run, so that nothing is taken."""
+    text = TWO_STARS + more
+    found = {d.path: d.value for d in read_unit_text(text).defaults}
+    assert found.get("impedances.zero_sequence") == words
 
 
 def test_stabilising_by_the_group_or_the_key():

@@ -6,8 +6,10 @@ from collections.abc import Iterator, Mapping
 from typing import Any
 
 from throughfault.quantities import Quantity
+from throughfault.tables import table
 from throughfault.workbook.inputs.lines import KeyPath, path_text
 from throughfault.workbook.inputs.model import UnitFile
+from throughfault.workbook.inputs.refused_rows import has_path
 from throughfault.workbook.inputs.section import Section
 from throughfault.workbook.inputs.unit import Default
 from throughfault.workbook.inputs.windings import Winding
@@ -82,6 +84,24 @@ def _settled(file: UnitFile) -> Iterator[Default]:
     for name, connection in file.connections.items():
         if connection.neutral and name not in file.earthing:
             yield Default(f"earthing.{name}", "solid")
+    words = _zero_sequence(file)
+    if words:
+        yield Default("impedances.zero_sequence", words)
+
+
+def _zero_sequence(file: UnitFile) -> str:
+    """Say what stands for the zero-sequence impedances that are not given; nothing where they do not matter."""
+    earthed = any(c.neutral and file.earthing.get(name, "solid") != "isolated" for name, c in file.connections.items())
+    lacking = any(row.zero_sequence is None and has_path(file, row) for row in file.impedances)
+    if file.group.single_phase or not earthed or not lacking:
+        return ""
+    if file.rating.core != "three-limb":
+        return "equal to the impedance"
+    if any(connection.letter == "D" for connection in file.group.windings):
+        (shares,) = table("iec60076_8_1997_zero_sequence_share").rows
+        return f"between {shares['share_least']:g} and {shares['share_greatest']:g} times the impedance, both run"
+    # Without the magnetising impedance the faults that need one are not run.
+    return "equal to the impedance" if file.zero_sequence is not None else ""
 
 
 def _shown(value: Any) -> Quantity | str:

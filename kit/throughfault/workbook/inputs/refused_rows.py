@@ -99,13 +99,13 @@ def zero_sequence_path(file: UnitFile, index: int) -> Iterator[Fault]:
     path = ("impedances", index, "zero_sequence")
     if file.group.single_phase:
         yield Fault(path, "must not be given for a single-phase unit, which has no zero sequence.")
-    elif set(row.between) <= set(file.windings) and not _has_path(file, row):
+    elif set(row.between) <= set(file.windings) and not has_path(file, row):
         first, second = row.between
         text = f"must not be given where no path exists: between '{first}' and '{second}' of {file.group.symbol}"
         yield Fault(path, f"{text} no zero-sequence current can flow.")
 
 
-def _has_path(file: UnitFile, row: ImpedanceRow) -> bool:
+def has_path(file: UnitFile, row: ImpedanceRow) -> bool:
     """Tell whether current can enter at one winding of the pair and be balanced in it or in the other."""
     pair = [file.connections[name] for name in row.between]
     if any(c.letter == "Z" and c.neutral for c in pair):  # balanced on each limb by itself
