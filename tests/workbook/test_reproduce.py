@@ -5,7 +5,7 @@ import json
 
 import pytest
 
-from throughfault.errors import RecordError
+from throughfault.errors import RecordError, UnitFileError
 from throughfault.workbook import reproduce as module
 from throughfault.workbook.reproduce import compare_results, reproduce
 from throughfault.workbook.results import read_results, results_bytes
@@ -100,6 +100,34 @@ def test_a_folder_without_results_is_no_record(tmp_path):
     """Only a record can be reproduced."""
     with pytest.raises(RecordError, match=r"must be a record folder, results\.json is missing or cannot be read\.$"):
         reproduce(tmp_path)
+
+
+@pytest.mark.parametrize(
+    "change", [lambda r: r["kit"].clear(), lambda r: r["template"].update(name=[1]), lambda r: r.update(checks=3)]
+)
+def test_results_that_lack_what_every_record_names_are_refused(record, change):
+    """A malformed record is bad input, not a fault of the kit."""
+    alter(record, change)
+    with pytest.raises(RecordError, match=r": results\.json: (kit\.version|template\.name|checks): "):
+        reproduce(record)
+
+
+def test_a_record_without_a_usable_unit_file_is_refused(record):
+    """What cannot be reviewed cannot be reproduced, and every fault of the file is named."""
+    (record / "inputs" / "unit.toml").write_text("format = 3\n", encoding="utf-8")
+    with pytest.raises(UnitFileError, match=r"unit\.toml: .*format: must be "):
+        reproduce(record)
+    (record / "inputs" / "unit.toml").unlink()
+    with pytest.raises(UnitFileError, match=r"^unit\.toml: cannot be read: "):
+        reproduce(record)
+
+
+def test_whole_numbers_beyond_a_double_are_compared(results):
+    """A number that no float holds is a difference, not a failure."""
+    new = copy.deepcopy(results)
+    new["quantities"]["duty.HV.peak"]["value"] = 10**400
+    (line,) = compare_results(results, new)[0]
+    assert line.startswith("quantities/duty.HV.peak/value: record ")
 
 
 @pytest.fixture(scope="module")

@@ -6,6 +6,7 @@ import pytest
 from nbformat.v4 import new_code_cell, new_notebook, new_output
 
 from throughfault.errors import DeclarationError, RecordError, RunError
+from throughfault.workbook import results
 from throughfault.workbook.results import MIME, emitted_fragments, lookup, merge_fragments, read_results, results_bytes
 
 FRAGMENT = {
@@ -77,19 +78,51 @@ def test_results_hold_no_nan():
         results_bytes({"x": float("nan")})
 
 
-@pytest.mark.parametrize("content", [None, b"\xff", b"[]", b'{"format": "other"}'])
-def test_what_is_no_record_is_refused(content, tmp_path):
-    """A folder without readable results of the format is no record."""
+HEAD = b'{"format": "throughfault-results/1"'
+WHOLE = {
+    "format": "throughfault-results/1",
+    "unit": {"tag": "BV-T9", "revision": "A"},
+    "kit": {"version": "0.1.0"},
+    "template": {"name": "rating", "sha256": "ab" * 32},
+    "inputs_sha256": "cd" * 32,
+    "checks": [],
+}
+
+
+@pytest.mark.parametrize(
+    ("content", "message"),
+    [
+        (None, ": must be a record folder, results.json is missing or cannot be read."),
+        (b"[]", ": results.json must be of format throughfault-results/1."),
+        (b'{"format": "other"}', ": results.json must be of format throughfault-results/1."),
+        (HEAD + b', "x": NaN}', ": results.json is not strict JSON in UTF-8: NaN is not a JSON number."),
+        (HEAD + b', "x": ' + b"[" * 100_000, ": results.json is nested too deeply to be read."),
+        (HEAD + b', "x": ' + b"[" * 300 + b"]" * 300 + b"}", ": results.json is nested too deeply to be read."),
+        (
+            HEAD + b', "kit": {}}',
+            ": results.json: unit: Field required; kit.version: Field required; template: Field required; inputs_sha256: Field required; checks: Field required.",
+        ),
+    ],
+)
+def test_what_is_no_record_is_refused(content, message, tmp_path):
+    """A folder without readable results of the format, with what every record names, is no record."""
     if content is not None:
         (tmp_path / "results.json").write_bytes(content)
-    with pytest.raises(
-        RecordError, match=r"results\.json (is missing or cannot be read|must be of format throughfault-results/1)\.$"
-    ):
+    with pytest.raises(RecordError) as fault:
+        read_results(tmp_path)
+    assert str(fault.value) == f"{tmp_path}{message}"
+
+
+def test_results_larger_than_a_record_may_hold_are_refused_unread(tmp_path, monkeypatch):
+    """No more is read than is allowed."""
+    monkeypatch.setattr(results, "RESULTS_LIMIT", 10)
+    (tmp_path / "results.json").write_bytes(results_bytes(WHOLE))
+    with pytest.raises(RecordError, match=r"results\.json is larger than the 10 bytes allowed\.$"):
         read_results(tmp_path)
 
 
 def test_results_read_back(tmp_path):
     """What is written is what is read."""
-    (tmp_path / "results.json").write_bytes(results_bytes({"format": "throughfault-results/1", "µ": 0.1}))
+    (tmp_path / "results.json").write_bytes(results_bytes({**WHOLE, "µ": 0.1}))
     assert read_results(tmp_path)["µ"] == 0.1
     assert json.loads(results_bytes(FRAGMENT)) == FRAGMENT

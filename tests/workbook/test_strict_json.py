@@ -4,7 +4,7 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
-from throughfault.workbook.strict_json import parse_strict, read_bounded
+from throughfault.workbook.strict_json import parse_strict, read_bounded, too_deep
 
 
 @pytest.mark.parametrize(
@@ -54,3 +54,12 @@ def test_any_bytes_give_a_value_or_a_sentence(data):
         parse_strict(data)
     except ValueError as error:
         assert str(error).startswith("is n")  # noqa: PT017 - a value is as good
+
+
+@pytest.mark.parametrize(("deep", "answer"), [(20, False), (21, True), (50_000, True)])
+def test_depth_is_bounded(deep, answer):
+    """Tables and lists may stand in each other to a depth, counted without recursion."""
+    document = 1
+    for level in range(deep):
+        document = [document] if level % 2 else {"x": document}
+    assert too_deep(document) is answer

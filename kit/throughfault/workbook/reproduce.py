@@ -13,9 +13,10 @@ from typing import Any
 
 from throughfault import __version__
 from throughfault.errors import RecordError
+from throughfault.workbook.inputs import read_unit
 from throughfault.workbook.resources import changes_file
 from throughfault.workbook.results import read_results
-from throughfault.workbook.run import fill_record
+from throughfault.workbook.run import UNIT_FILE, fill_record
 from throughfault.workbook.template import Template, find_template, read_template, shipped_templates
 
 __all__ = ["Comparison", "compare_results", "reproduce"]
@@ -28,6 +29,7 @@ FLOOR = {
     "%": 1e-9, "kA": 1e-9, "degC": 1e-7, "A/mm^2": 1e-9, "s": 1e-9, "kN": 1e-6, "MPa": 1e-6, "T": 1e-9, "deg": 1e-6,
 }  # fmt: skip
 ZERO = 1e-12
+LARGEST = 1e300
 #: a phasor of (nearly) no length has no angle worth comparing, kA
 NO_LENGTH = 1e-9
 
@@ -84,6 +86,8 @@ def _agree(path: str, old: Any, new: Any, unit: str) -> bool:
         return bool(old == new)
     solved = path.removeprefix("quantities/").startswith(SOLVED_PREFIXES)
     unit = _case_unit(path) or unit
+    if any(abs(v) > LARGEST for v in (old, new)):  # a whole number may be beyond what can be compared
+        return bool(old == new)
     return math.isclose(old, new, rel_tol=SOLVED if solved else CLOSED_FORM, abs_tol=FLOOR.get(unit, ZERO))
 
 
@@ -146,10 +150,13 @@ def reproduce(record: Path, template: Path | None = None, *, progress: bool = Fa
     ------
     RecordError
         If the record cannot be read, or the template needed is not at hand.
+    UnitFileError
+        If its unit file is at fault.
     RunError
         If the workbook cannot be executed.
     """
     old = read_results(record)
+    read_unit(record / "inputs" / UNIT_FILE)
     chosen, notes = _template_of(old, template)
     was = old["kit"]["version"]
     if was != __version__:

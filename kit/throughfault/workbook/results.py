@@ -8,8 +8,11 @@ from pathlib import Path
 from typing import Any
 
 import nbformat
+from pydantic import ValidationError
 
 from throughfault.errors import DeclarationError, RecordError, RunError
+from throughfault.workbook.documents import RESULTS, RESULTS_LIMIT, ResultsFace
+from throughfault.workbook.strict_json import model_faults, parse_strict, read_bounded, too_deep
 
 __all__ = ["FORMAT", "MIME", "emitted_fragments", "lookup", "merge_fragments", "read_results", "results_bytes"]
 
@@ -58,20 +61,27 @@ def results_bytes(results: Mapping[str, Any]) -> bytes:
 
 
 def read_results(record: Path) -> dict[str, Any]:
-    """Read the results of a record.
+    """Read the results of a record, strictly and no more than a record may hold.
 
     Raises
     ------
     RecordError
-        If the folder holds no readable results of a known format.
+        If the folder holds no readable results of a known format, or they lack what every record names.
     """
-    path = record / "results.json"
     try:
-        results = json.loads(path.read_bytes())
-    except (OSError, ValueError):
-        raise RecordError(f"{record}: must be a record folder, results.json is missing or cannot be read.") from None
+        results = parse_strict(read_bounded(record / RESULTS, RESULTS_LIMIT))
+    except OSError:
+        raise RecordError(f"{record}: must be a record folder, {RESULTS} is missing or cannot be read.") from None
+    except ValueError as fault:
+        raise RecordError(f"{record}: {RESULTS} {fault}.") from None
     if not isinstance(results, dict) or results.get("format") != FORMAT:
-        raise RecordError(f"{record}: results.json must be of format {FORMAT}.")
+        raise RecordError(f"{record}: {RESULTS} must be of format {FORMAT}.")
+    if too_deep(results):
+        raise RecordError(f"{record}: {RESULTS} is nested too deeply to be read.")
+    try:
+        ResultsFace.model_validate(results)
+    except ValidationError as error:
+        raise RecordError(f"{record}: {RESULTS}: {'; '.join(model_faults(error))}.") from None
     return results
 
 

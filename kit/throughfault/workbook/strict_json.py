@@ -9,8 +9,9 @@ from typing import NoReturn, TypeVar
 
 from pydantic import BaseModel, ValidationError
 
-__all__ = ["parse_strict", "read_bounded", "read_model"]
+__all__ = ["model_faults", "parse_strict", "read_bounded", "read_model", "too_deep"]
 
+DEEPEST = 20  # tables in tables; no document of the kit comes near it
 Model = TypeVar("Model", bound=BaseModel)
 
 
@@ -49,7 +50,22 @@ def read_model(kind: type[Model], data: bytes) -> Model:
     try:
         return kind.model_validate(parse_strict(data))
     except ValidationError as error:
-        raise ValueError("; ".join(_model_faults(error))) from None
+        raise ValueError("; ".join(model_faults(error))) from None
+
+
+def too_deep(document: object, depth: int = DEEPEST) -> bool:
+    """Tell whether lists and tables stand in each other more than `depth` deep."""
+    layer: list[object] = [document]
+    for _ in range(depth + 1):
+        layer = [
+            item
+            for outer in layer
+            if isinstance(outer, dict | list)
+            for item in (outer.values() if isinstance(outer, dict) else outer)
+        ]
+        if not layer:
+            return False
+    return True
 
 
 def _unique_keys(pairs: list[tuple[str, object]]) -> dict[str, object]:
@@ -72,7 +88,8 @@ def _finite(text: str) -> float:
     return number
 
 
-def _model_faults(error: ValidationError) -> list[str]:
+def model_faults(error: ValidationError) -> list[str]:
+    """Return what a model found, one line each."""
     return [
         f"{'.'.join(str(step) for step in fault['loc']) or 'the document'}: {fault['msg']}"
         for fault in error.errors(include_url=False, include_context=False, include_input=False)
