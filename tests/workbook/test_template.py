@@ -24,14 +24,14 @@ def test_a_template_that_only_calls_has_no_faults():
     ("cell", "fault"),
     [
         (
-            new_code_cell("x", metadata={"tags": ["findng"]}),
+            new_code_cell("", metadata={"tags": ["findng"]}),
             "tag must be one of parameters, calculation, finding, note, signature, got 'findng' (did you mean 'finding'?).",
         ),
         (
-            new_code_cell("x", outputs=[new_output("stream", text="1")]),
+            new_code_cell("", outputs=[new_output("stream", text="1")]),
             "must be stored without outputs and execution count.",
         ),
-        (new_code_cell("x", execution_count=3), "must be stored without outputs and execution count."),
+        (new_code_cell("", execution_count=3), "must be stored without outputs and execution count."),
         (new_code_cell("x ="), "must be Python, line 1 cannot be read."),
         (new_code_cell("import os"), "may import throughfault.notebook only, got 'import os'."),
         (
@@ -55,6 +55,80 @@ def test_a_template_that_only_calls_has_no_faults():
 def test_each_fault_is_named_with_its_cell(cell, fault):
     """A fault names the template, the cell and what belongs there."""
     assert faults(PARAMETERS, cell) == [f"t: cell 2: {fault}"]
+
+
+OPENING = "from throughfault import notebook as tf\nreview = tf.open_review(inputs)\n"
+
+
+@pytest.mark.parametrize(
+    "line",
+    [
+        '__import__("os").system("true")',
+        'open("x", "w")',
+        'exec("import os")',
+        "print(review)",
+        "review",
+        "review.unit",
+        "review.emit()",
+        "tf.Path(inputs)",
+        "tf.__class__",
+        'tf.__getattribute__("open_review")',
+        "tf.throughfault.cells()",
+        "tf.summary(review).__class__",
+        "tf.summary(tf.open_review(inputs))",
+        "tf.summary(*review)",
+        "tf.summary(review=review)",
+        'tf.summary(f"{review}")',
+        "tf.calculation(review, 3)",
+        "tf.summary(__builtins__)",
+        "tf = tf.open_review(inputs)",
+        "tf.summary = review",
+        "x = y = tf.summary(review)",
+        "_ = tf.summary(review)",
+        "x: int = tf.summary(review)",
+        "x, y = tf.summary(review)",
+        "del review",
+        "await review",
+        "(x := tf.summary(review))",
+    ],
+)
+def test_whatever_is_no_plain_call_is_refused(line):
+    """Nothing of Python is at hand in a template but the calls of the notebook module."""
+    assert faults(PARAMETERS, new_code_cell(OPENING + line)) == [
+        f"t: cell 2: may call throughfault.notebook only, with names and texts, got '{line.replace(chr(34), chr(39))}'."
+    ]
+
+
+@pytest.mark.parametrize(
+    ("line", "fault"),
+    [
+        (
+            "x = [f for f in review]",
+            "a notebook calls and does not compute; '[f for f in review]' belongs in a cell of the library.",
+        ),
+        ("import throughfault.notebook", "may import throughfault.notebook only, got 'import throughfault.notebook'."),
+        (
+            "from .throughfault import notebook",
+            "may import throughfault.notebook only, got 'from .throughfault import notebook'.",
+        ),
+        ("if review:\n    import os", "may import throughfault.notebook only, got 'import os'."),
+        ("%run x.py", "must be Python, line 3 cannot be read."),
+        ("\0", "must be Python, "),
+    ],
+)
+def test_each_other_statement_is_refused(line, fault):
+    """Computing, importing and the shell's own commands are refused as such."""
+    (found,) = faults(PARAMETERS, new_code_cell(OPENING + line))
+    assert found.startswith(f"t: cell 2: {fault}")
+
+
+def test_a_call_needs_the_import_before_it():
+    """A name that was not imported is not the notebook module, in whatever cell it stands."""
+    call, opening = new_code_cell("tf.summary(review)"), new_code_cell(OPENING)
+    assert faults(PARAMETERS, opening, call) == []
+    assert faults(PARAMETERS, call, opening) == [
+        "t: cell 2: may call throughfault.notebook only, with names and texts, got 'tf.summary(review)'."
+    ]
 
 
 def test_exactly_one_parameters_cell():

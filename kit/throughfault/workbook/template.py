@@ -11,6 +11,7 @@ from pathlib import Path
 import nbformat
 
 from throughfault.errors import TemplateError, did_you_mean
+from throughfault.workbook.part import PARTS
 from throughfault.workbook.resources import templates_folder
 
 __all__ = ["TAGS", "Template", "find_template", "read_template", "shipped_templates", "template_faults"]
@@ -18,6 +19,8 @@ __all__ = ["TAGS", "Template", "find_template", "read_template", "shipped_templa
 TAGS = ("parameters", "calculation", "finding", "note", "signature")
 PARAMETER = "inputs"
 ALLOWED_IMPORT = "throughfault"
+#: what a notebook may call of it
+CALLS = frozenset({"open_review", "calculation", *PARTS})
 _COMPUTING = (ast.BinOp, ast.AugAssign, ast.Compare, ast.Lambda, ast.FunctionDef, ast.AsyncFunctionDef, ast.ClassDef)
 _COMPUTING_STATEMENTS = (
     ast.For, ast.While, ast.With, ast.Try, ast.ListComp, ast.DictComp, ast.SetComp, ast.GeneratorExp,
@@ -68,7 +71,7 @@ def read_template(path: Path) -> Template:
     ------
     TemplateError
         With every fault: not a notebook, outputs left in, unknown tags, no or several parameters cells,
-        code that computes or imports.
+        code that does more than call `throughfault.notebook`.
     """
     data = path.read_bytes()
     try:
@@ -91,12 +94,13 @@ def template_faults(notebook: nbformat.NotebookNode, name: str) -> list[str]:
     faults = []
     if len(parameters) != 1:
         faults.append(f"{name}: must have exactly one code cell tagged 'parameters', has {len(parameters)}.")
+    imported: set[str] = set()
     for position, cell in enumerate(notebook.cells, start=1):
-        faults.extend(f"{name}: cell {position}: {fault}" for fault in _cell_faults(cell))
+        faults.extend(f"{name}: cell {position}: {fault}" for fault in _cell_faults(cell, imported))
     return faults
 
 
-def _cell_faults(cell: nbformat.NotebookNode) -> Iterator[str]:
+def _cell_faults(cell: nbformat.NotebookNode, imported: set[str]) -> Iterator[str]:
     tags = cell.metadata.get("tags", [])
     for tag in tags:
         if tag not in TAGS:
@@ -110,7 +114,10 @@ def _cell_faults(cell: nbformat.NotebookNode) -> Iterator[str]:
     except SyntaxError as fault:
         yield f"must be Python, line {fault.lineno} cannot be read."
         return
-    yield from _parameter_faults(tree) if "parameters" in tags else _code_faults(tree)
+    except (ValueError, RecursionError, MemoryError):  # a NUL, or brackets beyond what the reader holds
+        yield "must be Python, and cannot be read."
+        return
+    yield from _parameter_faults(tree) if "parameters" in tags else _code_faults(tree, imported)
 
 
 def _parameter_faults(tree: ast.Module) -> Iterator[str]:
@@ -120,16 +127,59 @@ def _parameter_faults(tree: ast.Module) -> Iterator[str]:
     yield f'the parameters cell must hold the one line {PARAMETER} = "...".'
 
 
-def _code_faults(tree: ast.Module) -> Iterator[str]:
-    for node in ast.walk(tree):
-        if isinstance(node, _COMPUTING + _COMPUTING_STATEMENTS):
-            line = ast.unparse(node).splitlines()[0][:60]
-            yield f"a notebook calls and does not compute; '{line}' belongs in a cell of the library."
-        elif isinstance(node, ast.Import | ast.ImportFrom) and not _allowed(node):
-            yield f"may import throughfault.notebook only, got '{ast.unparse(node)}'."
+def _code_faults(tree: ast.Module, imported: set[str]) -> Iterator[str]:
+    """Yield a fault for every statement but the import, calls on what it imports, and names given to such calls."""
+    for statement in tree.body:
+        if isinstance(statement, ast.ImportFrom) and _allowed(statement):
+            imported.update(alias.asname or alias.name for alias in statement.names)
+        elif not _is_call(statement, imported):
+            yield _fault_of(statement)
 
 
-def _allowed(node: ast.Import | ast.ImportFrom) -> bool:
-    if isinstance(node, ast.Import):
-        return False
-    return node.module == ALLOWED_IMPORT and [alias.name for alias in node.names] == ["notebook"]
+def _is_call(statement: ast.stmt, imported: set[str]) -> bool:
+    match statement:
+        case ast.Assign(targets=[ast.Name(id=name)], value=ast.Call() as call):
+            if name in imported or name.startswith("_"):
+                return False
+        case ast.Expr(value=ast.Call() as call):
+            pass
+        case _:
+            return False
+    match call:
+        case ast.Call(func=ast.Attribute(value=ast.Name(id=module), attr=function), args=arguments, keywords=[]):
+            return module in imported and function in CALLS and all(_is_plain(argument) for argument in arguments)
+    return False
+
+
+def _is_plain(argument: ast.expr) -> bool:
+    match argument:
+        case ast.Name(id=name):
+            return not name.startswith("_")
+        case ast.Constant(value=str()):
+            return True
+    return False
+
+
+def _fault_of(statement: ast.stmt) -> str:
+    """Say what is wrong with a statement: it computes, it imports, or it calls something else."""
+    nodes = list(ast.walk(statement))
+    computing = next((node for node in nodes if isinstance(node, _COMPUTING + _COMPUTING_STATEMENTS)), None)
+    if computing is not None:
+        return f"a notebook calls and does not compute; '{_line(computing)}' belongs in a cell of the library."
+    imports = next((node for node in nodes if isinstance(node, ast.Import | ast.ImportFrom)), None)
+    if imports is not None:
+        return f"may import throughfault.notebook only, got '{_line(imports)}'."
+    return f"may call throughfault.notebook only, with names and texts, got '{_line(statement)}'."
+
+
+def _line(node: ast.AST) -> str:
+    try:
+        return ast.unparse(node).splitlines()[0][:60]
+    except RecursionError:
+        return "..."
+
+
+def _allowed(node: ast.ImportFrom) -> bool:
+    module = node.module == ALLOWED_IMPORT and node.level == 0
+    names = [(alias.name, (alias.asname or alias.name).startswith("_")) for alias in node.names]
+    return module and names == [("notebook", False)]
