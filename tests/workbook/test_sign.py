@@ -335,3 +335,22 @@ def test_temporary_names_of_others_stay(bench):
         sign(record, "witness", bench.key("cyd").path, "Cyd")
     assert odd.read_text() == "mine"
     assert any(odd.name in fault for fault in caught.value.faults)
+
+
+@pytest.mark.parametrize("name", ["signatures", "SHA256SUMS", f"{TEMPORARY}SHA256SUMS"])
+def test_a_link_out_of_the_record_is_refused_before_anything_is_touched(bench, contents, name):
+    """What is taken back or written must stay within the record."""
+    record, key = bench.record(), bench.key()
+    outside = bench.folder / "outside"
+    if name == "signatures":
+        outside.mkdir()
+        (outside / f"{TEMPORARY}01-author.json").write_text("of somebody else")
+    else:
+        outside.write_text("of somebody else")
+    (record / name).unlink(missing_ok=True)
+    (record / name).symlink_to(outside)
+    before = contents(record), contents(bench.folder)
+    with pytest.raises(RecordError) as fault:
+        sign(record, "author", key.path, "Ann")
+    assert str(fault.value) == f"sign: {name} of the record must not be a symbolic link; nothing was changed"
+    assert (contents(record), contents(bench.folder)) == before

@@ -82,6 +82,7 @@ def sign(
     _check_arguments(role, decision, signer, comment)
     moment = timestamp(signed_on)
     private = load_private_key(key, passphrase)
+    _refuse_link(record)
     take_back(record)
     integrity, results = _signable(record, role, page_lint)
     earlier = earlier_statements(integrity)
@@ -105,6 +106,13 @@ def sign(
         manifest_sha256=integrity.manifest_sha256,
         key=fingerprint(public_blob(private.public_key())),
     )
+
+
+def _refuse_link(record: Path) -> None:
+    """See that what is taken back and written stays within the record."""
+    for path in (record / SIGNATURES, record / SUMS, record / f"{TEMPORARY}{SUMS}"):
+        if path.is_symlink():
+            raise RecordError(f"sign: {path.name} of the record must not be a symbolic link; nothing was changed")
 
 
 def take_back(record: Path) -> None:
