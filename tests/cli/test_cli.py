@@ -3,6 +3,7 @@
 import json
 import shutil
 import subprocess
+import sys
 from pathlib import Path
 
 import pytest
@@ -195,6 +196,61 @@ def test_openssh_and_coreutils_check_a_record_without_the_kit(call, record, key)
     assert (
         subprocess.run(["sha256sum", "-c", "SHA256SUMS"], cwd=record, capture_output=True, check=False).returncode == 0
     )
+
+
+def test_the_printed_command_is_quiet(tmp_path):
+    """A review into a relative folder, in a process of its own, prints its table and nothing on the error stream."""
+    command = [sys.executable, "-c", "from throughfault.cli import main; main()", "review", T1, "--out", "records"]
+    run_alone = subprocess.run(command, cwd=tmp_path, capture_output=True, text=True, check=False)
+    assert (run_alone.returncode, run_alone.stderr) == (0, "")
+    assert "Record: records/BV-T1-A" in run_alone.stdout
+
+
+T2 = (EXAMPLES / "BV-T2" / "unit.toml").read_text(encoding="utf-8")
+
+
+@pytest.mark.parametrize(
+    ("old", "new", "sentence"),
+    [
+        (
+            "[earthing]",
+            '[system.TV]\nout_of_phase = "180 deg"\n\n[earthing]',
+            "system.TV.out_of_phase: needs system.TV.short_circuit_power beside it.",
+        ),
+        (
+            "[declared]",
+            '[limits]\n"thermal.HV.temperature" = { value = "-5 degC", source = "x" }\n\n[declared]',
+            "limits.\"thermal.HV.temperature\".value: must be above zero, as a limit is, got '-5 degC'.",
+        ),
+        (
+            "[declared]",
+            '[limits]\n"apparatus.bushings.HV.peak_current" = { value = "12 kV", source = "x" }\n\n[declared]',
+            "limits.\"apparatus.bushings.HV.peak_current\".value: must be a current (unit one of mA, A, kA) for 'apparatus.bushings.HV.peak_current', got 12 kV.",
+        ),
+    ],
+)
+def test_what_no_review_could_use_is_refused(call, tmp_path, old, new, sentence):
+    """Check and review refuse it alike, in a sentence and with exit code 2."""
+    path = tmp_path / "unit.toml"
+    path.write_text(T2.replace(old, new, 1), encoding="utf-8")
+    for arguments in (("check", path), ("review", path, "--out", tmp_path / "records")):
+        code, _, err = call(*arguments)
+        assert code == 2
+        assert err.startswith("throughfault: unit.toml: [line ")
+        assert err.endswith(f"] {sentence}\n")
+
+
+@pytest.mark.parametrize(
+    "content",
+    ['{"format":"throughfault-results/1"}', '{"format":"throughfault-results/1","kit":{}}', "[" * 5000, '{"x":' * 900],
+)
+def test_a_malformed_record_is_bad_input(call, record, content):
+    """A record whose results cannot be used is refused in a sentence."""
+    (record / "results.json").write_text(content, encoding="utf-8")
+    code, _, err = call("reproduce", record)
+    assert code == 2
+    assert err.startswith(f"throughfault: {record}: ")
+    assert "Traceback" not in err
 
 
 def test_strict_answers_with_its_exit_code(call, tmp_path):

@@ -100,9 +100,12 @@ papermill_engines.register(ENGINE, ReviewEngine)
 
 @contextmanager
 def kernel_environment(scratch: Path) -> Iterator[None]:
-    """Give the kernel a repeatable environment: no user profile, fixed hash order, one thread, no display."""
+    """Give the kernel a repeatable environment: no user profile, fixed hash order, one thread, no display.
+
+    The kernel starts in another working folder, so that a relative `scratch` would lead it elsewhere.
+    """
     wanted = {
-        "IPYTHONDIR": str(scratch / "ipython"),
+        "IPYTHONDIR": str(scratch.resolve() / "ipython"),
         "MPLBACKEND": "agg",
         "OMP_NUM_THREADS": "1",
         "OPENBLAS_NUM_THREADS": "1",
