@@ -11,7 +11,7 @@ from throughfault.quantities import Quantity, parse
 
 FILES = sorted((Path(__file__).parent / "published").glob("*.toml"))
 VALUES = [(path.stem, value) for path in FILES for value in tomllib.loads(path.read_text(encoding="utf-8"))["value"]]
-KINDS = {"published", "memory", "independent"}
+KINDS = {"published", "memory", "derived", "independent"}
 
 
 def half_last_digit(text):
@@ -45,6 +45,7 @@ def test_a_printed_value_says_where_it_stands(file, value):
     assert value["kind"] in KINDS
     assert value["source"]
     assert (value["kind"] == "memory") == ("from memory" in value["source"])
+    assert (value["kind"] == "derived") == ("derived from the printed" in value["source"])
     assert ("tolerance" in value) == ("why" in value)
 
 

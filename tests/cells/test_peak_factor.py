@@ -12,9 +12,11 @@ from throughfault.cells.peak_factor import (
     peak_factor_closed_form,
     peak_factor_exact,
     peak_factor_from_table,
+    peak_factor_table_range,
     peak_short_circuit_current,
 )
 from throughfault.errors import OutsideValidity
+from throughfault.quantities import Quantity
 from throughfault.tables import table
 
 
@@ -37,6 +39,20 @@ def test_closed_form_lies_just_below_the_exact_maximum(ratio):
     """peak_factor_closed_form: never above, at most 1 % below."""
     closed, exact = peak_factor_closed_form(ratio), peak_factor_exact(ratio)
     assert exact * 0.99 < closed <= exact * (1 + 1e-12)
+
+
+@pytest.mark.parametrize("ratio", [1e-9, 1e8, 1e300])
+def test_closed_form_holds_for_any_ratio(ratio):
+    """peak_factor_closed_form as a worked step: between root two and twice that, however extreme X/R."""
+    factor = peak_factor_closed_form.step("a", x_over_r=Quantity(ratio, "1")).result
+    assert math.sqrt(2) <= factor.value <= 2 * math.sqrt(2)
+    peak_short_circuit_current.step("b", symmetrical_current=Quantity(1.0, "kA"), peak_factor=factor)
+
+
+def test_range_is_that_of_the_table():
+    """peak_factor_table_range: the first and the last X/R of the table."""
+    ratios = table("iec60076_5_2006_peak_factor").column("x_over_r")
+    assert peak_factor_table_range() == (min(ratios), max(ratios)) == (1.0, 14.0)
 
 
 def test_ends_of_the_exact_factor():

@@ -78,8 +78,12 @@ def _sequence_form(given: dict[str, Any], got: Solution) -> float:
         "two or more windings in star, delta, interstar, auto or single-phase connection on common limbs",
     ),
     checks=(
-        "tests/numerics/test_network.py: against symmetrical components for the usual vector groups",
-        "tests/numerics/test_network_properties.py: ampere-turn balance and energy for any unit",
+        "tests/numerics/test_network_sequence.py::test_star_delta_faulted_on_the_star_side: symmetrical components",
+        "tests/numerics/test_network_sequence.py::test_autotransformer_with_delta_and_both_sides_fed: the same, auto",
+        "tests/numerics/test_network_nodal.py::test_every_current_of_random_networks_equals_nodal_analysis: any unit",
+        "tests/numerics/test_network_properties.py::test_ampere_turns_balance_on_every_limb: for any unit",
+        "tests/numerics/test_network_properties.py::test_energy_in_the_impedances_is_never_negative: for any unit",
+        "tests/published/test_fault_current_network.py::TestIec60909Network: printed currents of eight buses",
     ),
 )
 def fault_currents(transformer: Transformer, cases: Cases) -> Solution:

@@ -11,6 +11,7 @@ from throughfault.sources import Source
 
 CLAUSE = Source("IEEEC57.12.00-2015", "7.4", "recalled")
 TEMPERATURE = {"at_least": -60.0, "at_most": 400.0}
+TESTS = "tests/cells/test_heat_content.py"
 SECTIONS = (Range("insulation_section", at_least=0.0), Range("conductor_section", above=0.0))
 TEMPERATURES = (Range("start_temperature", **TEMPERATURE), Range("final_temperature", at_least=-60.0, at_most=2000.0))
 
@@ -25,7 +26,7 @@ TEMPERATURES = (Range("start_temperature", **TEMPERATURE), Range("final_temperat
         Range("resistivity_20", above=0.0),
         Range("density", above=0.0),
     ),
-    checks=("tests/published/thermal.toml: the two temperatures from 105 degC",),
+    checks=("tests/published/thermal.toml::direct loss of copper: 2.36 W/kg at 1 A/mm^2 and 75 degC",),
 )
 def start_loss(
     current_density: Annotated[float, nom.current_density],
@@ -48,7 +49,7 @@ def start_loss(
         Range("start_temperature", **TEMPERATURE),
         Range("temperature_offset", at_least=200.0, at_most=300.0),
     ),
-    checks=("tests/cells/test_heat_content.py: unchanged at the reference temperature",),
+    checks=(f"{TESTS}::test_eddy_share_is_unchanged_at_the_reference_temperature: lower when hotter",),
 )
 def start_eddy_share(
     eddy_share: Annotated[float, nom.eddy_share],
@@ -65,7 +66,7 @@ def start_eddy_share(
     title="Heat content of a copper conductor and its insulation",
     source=CLAUSE,
     valid_for=(*TEMPERATURES, *SECTIONS),
-    checks=("tests/cells/test_heat_content.py: the constants are those of the table",),
+    checks=(f"{TESTS}::test_heat_contents_are_those_of_the_table: to the last digit",),
 )
 def heat_content_copper(
     start_temperature: Annotated[float, nom.start_temperature],
@@ -82,7 +83,7 @@ def heat_content_copper(
     title="Heat content of an aluminium conductor and its insulation",
     source=CLAUSE,
     valid_for=(*TEMPERATURES, *SECTIONS),
-    checks=("tests/cells/test_heat_content.py: the constants are those of the table",),
+    checks=(f"{TESTS}::test_heat_contents_are_those_of_the_table: to the last digit",),
 )
 def heat_content_aluminium(
     start_temperature: Annotated[float, nom.start_temperature],
@@ -105,7 +106,7 @@ def heat_content_aluminium(
         Range("start_temperature", **TEMPERATURE),
         Range("temperature_offset", at_least=200.0, at_most=300.0),
     ),
-    checks=("tests/cells/test_heat_content.py: one when the starting loss alone doubles the resistance",),
+    checks=(f"{TESTS}::test_ratio_of_one_doubles_the_resistance: by the starting loss alone",),
 )
 def heating_ratio(
     start_loss: Annotated[float, nom.start_loss],

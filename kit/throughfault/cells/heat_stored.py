@@ -23,6 +23,7 @@ from throughfault.sources import Source
 from throughfault.tables import table
 
 SERIES_TO = 0.6  # heating ratio up to which the series form holds
+TESTS = "tests/cells/test_heat_stored.py"
 NEAR_ENOUGH = 1e-10  # K between two rounds
 ROUNDS = 200
 HOTTEST = 2000.0  # degC; beyond any conductor, so the iteration is refused rather than let run away
@@ -39,7 +40,7 @@ FINAL = (
     title="Final temperature, series form",
     source=CLAUSE,
     valid_for=(*FINAL, Range("heating_ratio", at_least=0.0, at_most=0.6)),
-    checks=("tests/published/thermal.toml: rise for a ratio of 0.4 and an eddy share of 0.1",),
+    checks=("tests/published/thermal.toml::rise by heating ratio: 0.536 for a ratio of 0.4 and an eddy share of 0.1",),
 )
 def final_temperature_series(
     start_temperature: Annotated[float, nom.start_temperature],
@@ -57,8 +58,8 @@ def final_temperature_series(
     source=CLAUSE,
     valid_for=(*FINAL, Range("heating_ratio", at_least=0.0, at_most=2.0)),
     checks=(
-        "tests/published/thermal.toml: rises for ratios of 0.4 and 0.8",
-        "tests/cells/test_heat_stored.py: against numerical integration of the heat equation",
+        "tests/published/thermal.toml::rise by heating ratio: 0.532 and 1.313 for ratios of 0.4 and 0.8",
+        f"{TESTS}::test_exponential_form_solves_the_heat_equation: by numerical integration",
     ),
 )
 def final_temperature_exponential(
@@ -84,7 +85,7 @@ SOLVED = Source("IEEEC57.12.00-2015", "7.4, solved for the heating ratio", "deri
     source=SOLVED,
     valid_for=(*FINAL, ABOVE_START),
     terms={"r": nom.relative_rise},
-    checks=("tests/cells/test_heat_stored.py: its final temperature is the permitted one",),
+    checks=(f"{TESTS}::test_permitted_ratios_reach_the_permitted_temperature: put into the form",),
 )
 def permitted_heating_ratio_series(
     start_temperature: Annotated[float, nom.start_temperature],
@@ -103,7 +104,7 @@ def permitted_heating_ratio_series(
     source=SOLVED,
     valid_for=(*FINAL, ABOVE_START),
     terms={"r": nom.relative_rise},
-    checks=("tests/cells/test_heat_stored.py: its final temperature is the permitted one",),
+    checks=(f"{TESTS}::test_permitted_ratios_reach_the_permitted_temperature: put into the form",),
 )
 def permitted_heating_ratio_exponential(
     start_temperature: Annotated[float, nom.start_temperature],
@@ -127,7 +128,7 @@ def permitted_heating_ratio_exponential(
         Range("temperature_offset", at_least=200.0, at_most=300.0),
         Range("start_loss", above=0.0),
     ),
-    checks=("tests/cells/test_heat_stored.py: its final temperature is the permitted one",),
+    checks=(f"{TESTS}::test_permissible_duration_reaches_the_permitted_temperature: put into the whole iteration",),
 )
 def permissible_duration_heat_stored(
     heating_ratio: Annotated[float, nom.heating_ratio],
@@ -204,7 +205,7 @@ EXAMPLE = {
     ),
     example=lambda: dict(EXAMPLE),
     valid_for=(f"duration above 0 and at most {ADIABATIC_TO:g} s; final temperature at most {HOTTEST:g} degC",),
-    checks=("tests/published/thermal.toml: the two temperatures from 105 degC",),
+    checks=("tests/published/thermal.toml::all heat stored from 105 degC: copper and aluminium, within 0.7 %",),
 )
 def final_temperature_all_heat_stored(
     *,

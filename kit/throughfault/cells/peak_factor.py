@@ -31,8 +31,8 @@ __all__ = [
     valid_for=(Range("x_over_r", above=0.0),),
     terms={"phi": nom.impedance_angle},
     checks=(
-        "tests/published/peak_factor.toml: the eleven factors of the IEEE table",
-        "tests/cells/test_peak_factor.py: below the exact first maximum, and by less than 1 %",
+        "tests/published/peak_factor.toml::table of K: eleven factors, to the last digit",
+        "tests/cells/test_peak_factor.py::test_closed_form_lies_just_below_the_exact_maximum: by less than 1 %",
     ),
 )
 def peak_factor_closed_form(x_over_r: Annotated[float, nom.x_over_r]) -> Annotated[float, nom.peak_factor]:
@@ -76,8 +76,8 @@ def _crest(given: dict[str, float], got: float) -> float:
     example=lambda: {"x_over_r": 7.0},
     valid_for=("X/R at least 0; closing at voltage zero, which gives the greatest first peak",),
     checks=(
-        "tests/test_every_table.py: every row of the IEC table is this maximum rounded to 0.01",
-        "tests/cells/test_peak_factor.py: against numerical integration of the circuit",
+        "tests/test_every_table.py::test_iec_peak_factors_are_the_exact_first_maximum: every row, rounded to 0.01",
+        "tests/cells/test_peak_factor.py::test_exact_factor_is_the_integrated_circuit: by numerical integration",
     ),
 )
 def peak_factor_exact(x_over_r: ArrayLike) -> Any:
@@ -112,7 +112,7 @@ def _between_its_rows(given: dict[str, float], got: float) -> float:
     ),
     example=lambda: {"x_over_r": 7.0},
     valid_for=("X/R at least {:g} and at most {:g}".format(*peak_factor_table_range()),),
-    checks=("tests/cells/test_peak_factor.py: rows are returned as tabled, a middle value lies on the straight line",),
+    checks=("tests/cells/test_peak_factor.py::test_table_returns_its_rows_and_a_straight_line_between: X/R 9 halfway",),
 )
 def peak_factor_from_table(x_over_r: ArrayLike) -> Any:
     """Factor of the standard's table, interpolated linearly; a float, or an array of the same shape."""
@@ -128,9 +128,12 @@ def peak_factor_from_table(x_over_r: ArrayLike) -> Any:
 
 @cell(
     title="First peak of the short-circuit current",
-    source=Source("IEC60076-5:2006", "4.2.3", "recalled"),
+    source=Source("CircuitTheory", "factor times r.m.s. current (as in IEC 60076-5:2006, 4.2.3)", "derived"),
     valid_for=(Range("symmetrical_current", at_least=0.0), Range("peak_factor", at_least=sqrt(2), at_most=2 * sqrt(2))),
-    checks=("tests/published/fault_current.toml: 40 MVA, 132 kV unit",),
+    checks=(
+        "tests/published/fault_current.toml::40 MVA unit at 132 kV: 2.55 times 1.682 kA",
+        "tests/published/peak_factor.toml::3.75 MVA unit of a textbook: 2930 A",
+    ),
 )
 def peak_short_circuit_current(
     symmetrical_current: Annotated[float, nom.symmetrical_current],

@@ -21,14 +21,16 @@ ABOVE_START = Condition(
     "permitted temperature above the initial temperature",
     lambda permitted_temperature, initial_temperature, **_: permitted_temperature > initial_temperature,
 )
-INTEGRATED = "tests/cells/test_thermal_withstand.py: against numerical integration of the heat equation"
+TESTS = "tests/cells/test_thermal_withstand.py"
+ABOVE = f"{TESTS}::test_average_form_lies_just_above_the_exponential: by 2.5 % of the rise at most"
+INTEGRATED = f"{TESTS}::test_exact_forms_solve_the_heat_equation: by numerical integration"
 
 
 @cell(
     title="Current density during the short circuit",
-    source=AVERAGE,
+    source=Source("CircuitTheory", "current over section (as in IEC 60076-5:2006, 4.1.5)", "derived"),
     valid_for=(Range("winding_current", at_least=0.0), Range("conductor_section", above=0.0)),
-    checks=("tests/cells/test_thermal_withstand.py: one kiloampere in a thousand square millimetres",),
+    checks=(f"{TESTS}::test_density_of_a_kiloampere: in 1000 mm^2",),
 )
 def current_density(
     winding_current: Annotated[float, nom.winding_current], conductor_section: Annotated[float, nom.conductor_section]
@@ -48,8 +50,8 @@ def current_density(
         Condition("J^2 t < 106000", lambda current_density, duration, **_: current_density**2 * duration < 106000),
     ),
     checks=(
-        "tests/published/thermal.toml: 96.5 A/mm^2 for 2 s from 105 to 250 degC",
-        "tests/cells/test_thermal_withstand.py: above the exact exponential, and near it",
+        "tests/published/thermal.toml::density that reaches the limit in 2 s: 96.5 A/mm^2 from 105 to 250 degC",
+        ABOVE,
     ),
 )
 def average_temperature_copper(
@@ -72,8 +74,8 @@ def average_temperature_copper(
         Condition("J^2 t < 45700", lambda current_density, duration, **_: current_density**2 * duration < 45700),
     ),
     checks=(
-        "tests/published/thermal.toml: 53.6 A/mm^2 for 2 s from 105 to 200 degC",
-        "tests/cells/test_thermal_withstand.py: above the exact exponential, and near it",
+        "tests/published/thermal.toml::density that reaches the limit in 2 s: 53.6 A/mm^2 from 105 to 200 degC",
+        ABOVE,
     ),
 )
 def average_temperature_aluminium(
@@ -90,7 +92,7 @@ def average_temperature_aluminium(
     title="Duration in which a copper winding reaches the permitted temperature",
     source=INVERTED,
     valid_for=(START, DENSITY, ABOVE_START),
-    checks=("tests/cells/test_thermal_withstand.py: its average temperature is the permitted one",),
+    checks=(f"{TESTS}::test_permissible_duration_reaches_the_permitted_temperature: put into the average form",),
 )
 def permissible_duration_copper(
     initial_temperature: Annotated[float, nom.initial_temperature],
@@ -106,7 +108,7 @@ def permissible_duration_copper(
     title="Duration in which an aluminium winding reaches the permitted temperature",
     source=INVERTED,
     valid_for=(START, DENSITY, ABOVE_START),
-    checks=("tests/cells/test_thermal_withstand.py: its average temperature is the permitted one",),
+    checks=(f"{TESTS}::test_permissible_duration_reaches_the_permitted_temperature: put into the average form",),
 )
 def permissible_duration_aluminium(
     initial_temperature: Annotated[float, nom.initial_temperature],
@@ -122,7 +124,7 @@ def permissible_duration_aluminium(
     title="Heat integral of the symmetrical current",
     source=Source(HEAT, "integral of the squared current density, without offset", "derived"),
     valid_for=(Range("current_density", at_least=0.0), Range("duration", at_least=0.0)),
-    checks=("tests/cells/test_thermal_withstand.py: the offset form without offset",),
+    checks=(f"{TESTS}::test_without_offset_the_heat_is_density_squared_times_duration: against the offset form",),
 )
 def heat_integral(
     current_density: Annotated[float, nom.current_density], duration: Annotated[float, nom.duration]
@@ -140,7 +142,7 @@ def heat_integral(
         Range("duration", above=0.0),
         Range("offset_time_constant", above=0.0),
     ),
-    checks=("tests/cells/test_thermal_withstand.py: against the exact integral of the wave",),
+    checks=(f"{TESTS}::test_offset_form_is_the_integral_of_the_wave: within 0.007 s",),
 )
 def heat_integral_with_offset(
     current_density: Annotated[float, nom.current_density],
@@ -192,7 +194,7 @@ def exact_temperature(
         ),
     ),
     terms={"y_0": nom.start_above_zero_resistance, "y_r": nom.reference_above_zero_resistance},
-    checks=(INTEGRATED, "tests/cells/test_thermal_withstand.py: without eddy loss the exponential"),
+    checks=(INTEGRATED, f"{TESTS}::test_without_eddy_loss_the_form_is_the_exponential: at a share of zero"),
 )
 def exact_temperature_with_eddy_loss(
     initial_temperature: Annotated[float, nom.initial_temperature],
@@ -221,7 +223,7 @@ def exact_temperature_with_eddy_loss(
         Range("thermal_constant", above=0.0),
         Range("temperature_offset", at_least=200.0, at_most=300.0),
     ),
-    checks=("tests/cells/test_thermal_withstand.py: its exact temperature is the permitted one",),
+    checks=(f"{TESTS}::test_exact_duration_reaches_the_permitted_temperature: put into the exact form",),
 )
 def exact_permissible_duration(
     initial_temperature: Annotated[float, nom.initial_temperature],
@@ -246,7 +248,7 @@ def exact_permissible_duration(
         Range("dead_time", at_least=0.0),
         Range("cooling_time_constant", above=0.0),
     ),
-    checks=("tests/cells/test_thermal_withstand.py: against integration of the cooling",),
+    checks=(f"{TESTS}::test_pause_cools_along_the_exponential: by numerical integration",),
 )
 def temperature_after_pause(
     conductor_temperature: Annotated[float, nom.conductor_temperature],

@@ -16,14 +16,16 @@ from throughfault.tables import table
 GUIDE = Source("IEEEC57.109-2018", "4", "recalled")
 IMPEDANCE = Range("fault_impedance", above=0.0, at_most=1.0)
 SHARE = Range("mechanical_share", above=0.0, at_most=100.0)
-CORNERS = "tests/published/through_fault.toml: the corner points of the categories"
+CORNERS = "tests/published/through_fault.toml::corner points: of categories II, III and IV"
+CURVE = "tests/cells/test_through_fault.py"
+AT_GREATEST = f"{CURVE}::test_two_seconds_at_the_greatest_current: for any impedance"
 
 
 @cell(
     title="Duration by a constant heat integral",
     source=Source("IEEEC57.12.00-2015", "7.1.3", "recalled"),
     valid_for=(Range("current_multiple", at_least=4.75),),
-    checks=("tests/published/through_fault.toml: 25, 35 and 40 times",),
+    checks=("tests/published/through_fault.toml::constant heat integral: 25, 35 and 40 times",),
 )
 def thermal_duration(current_multiple: Annotated[float, nom.current_multiple]) -> Annotated[float, nom.duration]:
     """Upper part of the thermal curve; below it the curve allows more."""
@@ -35,7 +37,7 @@ def thermal_duration(current_multiple: Annotated[float, nom.current_multiple]) -
     title="Duration by the mechanical part of the curve",
     source=GUIDE,
     valid_for=(Range("current_multiple", above=0.0), IMPEDANCE),
-    checks=("tests/cells/test_through_fault.py: two seconds at the greatest possible current",),
+    checks=(AT_GREATEST,),
 )
 def mechanical_duration(
     current_multiple: Annotated[float, nom.current_multiple], fault_impedance: Annotated[float, nom.fault_impedance]
@@ -89,7 +91,7 @@ def corner_thermal_duration(
     title="Impedance that bounds the through-fault current",
     source=Source("IEEEC57.109-2018", "4, from the greatest current of the duty", "derived"),
     valid_for=(Range("current_multiple", at_least=1.0),),
-    checks=("tests/cells/test_through_fault.py: two seconds at the greatest possible current",),
+    checks=(AT_GREATEST,),
 )
 def fault_impedance(
     current_multiple: Annotated[float, nom.current_multiple],
@@ -121,7 +123,10 @@ def _on_the_line(given: dict[str, float], got: float) -> float:
     ),
     example=lambda: {"current_multiple": 8.0},
     valid_for=("current at least 2 and at most 25 times base",),
-    checks=("tests/cells/test_through_fault.py: the points are returned, and the upper part is the constant integral",),
+    checks=(
+        f"{CURVE}::test_curve_returns_its_points: falling between them",
+        f"{CURVE}::test_upper_curve_is_the_constant_integral: from 4.75 times on",
+    ),
 )
 def thermal_curve_duration(current_multiple: ArrayLike) -> Any:
     """Duration in s, straight between the tabled points on logarithmic axes; a float, or an array of the same shape."""
