@@ -87,8 +87,7 @@ def repeated_shots(
         Points on each shot and each pause.
     """
     run, rest = (np.linspace(0.0, length, points)[1:] for length in (duration, pause))
-    time, temperature = [np.zeros(1)], [np.full(1, start)]
-    ends: list[float] = []
+    time, temperature, ends = [np.zeros(1)], [np.full(1, start)], list[float]()
     for shot in range(count):
         if shot:
             time.append(time[-1][-1] + rest)

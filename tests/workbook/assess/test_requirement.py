@@ -204,6 +204,13 @@ def test_a_dry_unit_under_the_liquid_immersed_standard_is_an_open_point():
     assert "requirement.immersion" not in points(assessed(IEEE))
 
 
+def test_plain_circuit_relations_are_no_clause_of_the_other_standard():
+    """Under IEEE no worked line of the requirement is cited as IEC's."""
+    steps = assessed(IEEE).fragment.steps
+    assert {s.cell.name for s in steps} >= {"system_impedance", "transformer_impedance", "system_share"}
+    assert not [s.id for s in steps if s.cell.source.key.startswith("IEC")]
+
+
 def test_duration_shorter_than_asked_is_an_open_point():
     """1 s taken, 2 s asked without an agreement."""
     found = assessed(('fault_duration = "2 s"', 'fault_duration = "1 s"'))

@@ -161,6 +161,17 @@ def test_ieee_form_decides_under_ieee():
     assert hv.temperature > hv.comparisons["other"][1].value
 
 
+def test_plain_circuit_relations_are_no_clause_of_the_other_standard():
+    """Under IEEE only the other standard's form, shown beside, is cited as IEC's."""
+    steps = [s for s in assessed(IEEE).fragment.steps if not s.id.endswith("other_standard")]
+    assert {s.id for s in steps} >= {"thermal.HV.density", "thermal.HV.multiple"}
+    assert not [s.id for s in steps if s.cell.source.key.startswith("IEC")]
+    density = next(s for s in steps if s.id == "thermal.HV.density").cell.source
+    assert (density.citation, density.provenance) == (
+        "CircuitTheory, current over section (as in IEC 60076-5:2006, 4.1.5)", "derived",
+    )  # fmt: skip
+
+
 def test_exponential_form_above_its_ratio():
     """A heating ratio above 0.6 passes to the exponential form, in the temperature and in its inverse."""
     thermal = assessed(IEEE, duty=duty_of(HV=3.3, LV=3.4))

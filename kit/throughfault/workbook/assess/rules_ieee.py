@@ -156,7 +156,9 @@ class IeeeC57Part12:
         if row is None:
             return LimitOrReason(None, "the table has no row for this class", "rating.thermal_class")
         source = rows.source
-        limit = Limit(row["temperature"], "degC", "at most", source.citation, source.provenance, rows.header["confidence"])
+        limit = Limit(
+            row["temperature"], "degC", "at most", source.citation, source.provenance, rows.header["confidence"]
+        )
         note = "the limit is the dry-type standard's, the form of the temperature the liquid-immersed standard's"
         return LimitOrReason(limit, note=note)
 
