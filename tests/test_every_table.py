@@ -1,6 +1,8 @@
 """The contract that every table keeps, and tables against their own formulas."""
 
 import math
+import re
+from pathlib import Path
 
 import pytest
 
@@ -20,6 +22,10 @@ ASCENDING = {
     "ieee_c57_12_00_2015_peak_factor": ("r_over_x",),
     "ieee_c57_109_2018_thermal_curve": ("multiple",),
 }
+ROOT = Path(__file__).parent.parent
+KIT = {path: path.read_text(encoding="utf-8") for path in (ROOT / "kit").rglob("*.py")}
+TESTS = "\n".join(path.read_text(encoding="utf-8") for path in (ROOT / "tests").rglob("*.py"))
+MADE_UP = {"copper", "aluminium", "copper_confidence", "aluminium_confidence"}  # columns named by the material
 
 
 @pytest.mark.parametrize("name", table_names())
@@ -46,6 +52,27 @@ def test_columns_have_units_and_finite_numbers(name):
             assert value is None or isinstance(value, str) or math.isfinite(value)
             if column["unit"] != "text":
                 assert value is None or isinstance(value, float)
+
+
+@pytest.mark.parametrize("name", table_names())
+def test_every_column_is_read_or_said_to_be_evidence(name):
+    """What no module reads by name stands in the header as evidence, and a test reads it."""
+    evidence = table(name).header.get("evidence", [])
+    columns = {column["name"] for column in table(name).header["columns"]}
+    assert set(evidence) <= columns
+    readers = "\n".join(text for text in KIT.values() if f'"{name}"' in text)
+    read = {column for column in columns if re.search(rf"""["']{column}["']|\b{column}=""", readers)}
+    assert columns - read - MADE_UP <= set(evidence)
+    for column in evidence:
+        assert f'"{column}"' in TESTS, column
+
+
+@pytest.mark.parametrize("key", bibliography())
+def test_every_source_is_cited(key):
+    """A source of the bibliography is cited by a cell, a table or a published value."""
+    tables = (path.read_text(encoding="utf-8") for path in (ROOT / "kit/throughfault/tables").glob("*.csv"))
+    published = (path.read_text(encoding="utf-8") for path in (ROOT / "tests/published").iterdir() if path.is_file())
+    assert any(f'"{key}"' in text or f"({key})" in text for text in (*KIT.values(), *tables, *published, TESTS))
 
 
 @pytest.mark.parametrize(("name", "column"), [(n, c) for n, columns in ASCENDING.items() for c in columns])
@@ -143,6 +170,19 @@ def test_upper_thermal_points_lie_on_the_constant_integral():
             assert thermal_duration(row["multiple"]) == pytest.approx(row["duration"], rel=0.055)
     assert 1250 / rows[0]["multiple"] ** 2 == pytest.approx(312.5)
     assert rows[0]["duration"] == 1800
+
+
+def test_start_and_reference_temperatures_follow_from_the_rated_rise():
+    """30 degC ambient, rated rise and a hottest-spot allowance of 15 K or 10 K; 20 degC and rated rise (from memory)."""
+    for row, allowance in zip(table("ieee_c57_12_00_2015_start_temperature").rows, (15.0, 10.0), strict=True):
+        assert row["temperature"] == 30.0 + row["average_rise"] + allowance
+        assert row["reference_temperature"] == 20.0 + row["average_rise"]
+
+
+def test_zero_sequence_shares_are_in_order():
+    """The lower share of a three-limb unit lies below the greater, which is the impedance itself."""
+    row = table("iec60076_8_1997_zero_sequence_share").rows[0]
+    assert 0.0 < row["share_least"] < row["share_greatest"] == 1.0
 
 
 def test_short_duration_of_category_one_joins_the_rule():

@@ -243,7 +243,7 @@ class TestGloverAutotransformer:
 
 
 class TestIec60909Network:
-    """IEC TR 60909-4, test network: initial three-phase short-circuit currents at the eight buses.
+    """IEC TR 60909-4 (IECTR60909-4), test network: initial three-phase short-circuit currents at the eight buses.
 
     Every transformer is its terminal admittance as the kit's network gives it (currents into all terminals, one of them
     at unit voltage and the others shorted); lines, sources and the correction factors of IEC 60909-0 stand here.

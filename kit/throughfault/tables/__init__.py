@@ -4,6 +4,7 @@ A file is a block of comment lines that together are TOML, then comma-separated 
 digits as transcribed. Required header keys: ``title``, ``source`` (key of the bibliography),
 ``where``, ``edition``, ``provenance``, ``confidence`` (H, M or L), ``transcribed_by``,
 ``checked_by``, ``errata`` and ``columns`` (list of ``{name, unit, description}``; unit ``text`` for words).
+An ``evidence`` key names columns that stand there for the tests alone.
 Nothing is extrapolated; a new edition is a new file.
 """
 
