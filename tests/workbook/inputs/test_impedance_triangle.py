@@ -4,7 +4,7 @@ import math
 from pathlib import Path
 
 import pytest
-from hypothesis import given
+from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from throughfault.errors import UnitFileError
@@ -29,6 +29,21 @@ def test_pairs_that_no_windings_can_have_are_refused():
     )
 
 
+def test_tolerances_may_leave_no_such_windings():
+    """What passes as given is refused where the duty, run less the tolerances, would have no transformer."""
+    row = 'impedance = "7.95 %"\nbase_power = "53 MVA"\nload_loss = "150 kW"\nbasis = "measured"'
+    assert row in T2
+    near = T2.replace('"3.00 %"', '"1.0 %"')
+    small = row.replace("7.95", "1.6").replace("measured", "guaranteed")
+    read_unit_text(near.replace(row, small))
+    with pytest.raises(UnitFileError) as fault:
+        read_unit_text(near.replace(row, f'{small}\ntolerance = "25 %"'))
+    assert [line.split(": ", 1)[1] for line in fault.value.faults] == [
+        "impedances: contradict each other at tapping 'principal': no windings can have these impedances between pairs, less their tolerances."
+    ]
+
+
+@settings(deadline=None)  # a whole duty, not a formula: slow where the machine is busy
 @given(st.floats(2.0, 20.0), st.floats(2.0, 20.0), st.floats(2.0, 20.0))
 def test_what_is_accepted_can_be_solved(ab, ac, bc):
     """A file that passes gives a passive network, whose exact transient exists."""
