@@ -20,6 +20,7 @@ from throughfault.cells.thermal_withstand import (
     temperature_after_pause,
 )
 from throughfault.numerics.wave import heat_integral as wave_heat_integral
+from throughfault.tables import table
 
 STARTS, DENSITIES = st.floats(20.0, 155.0), st.floats(10.0, 90.0)
 CONSTANTS = {"copper": (106000.0, 235.0), "aluminium": (45700.0, 225.0)}
@@ -40,6 +41,16 @@ def test_average_form_lies_just_above_the_exponential(material, start, density):
     average = AVERAGE[material](start, density, 2.0)
     exact = exact_temperature(start, density**2 * 2.0, constant, offset)
     assert exact - 1e-9 <= average <= exact + 0.025 * (exact - start) + 1e-9
+
+
+@pytest.mark.parametrize("material", ["copper", "aluminium"])
+def test_constants_are_those_of_the_table(material):
+    """The average forms and their inverses carry constant and offset of the table: half the constant adds 2 (T + T_k)."""
+    row = table("iec60076_5_2006_thermal_constant").row(material=material)
+    constant, offset = row["constant"], row["temperature_offset"]
+    assert AVERAGE[material](100.0, constant**0.5, 0.5) == pytest.approx(100.0 + 2 * (100.0 + offset), rel=1e-12)
+    allowed = ALLOWED[material](100.0, constant**0.5, 100.0 + 2 * (100.0 + offset))
+    assert allowed == pytest.approx(0.5, rel=1e-12)
 
 
 def test_average_form_errs_high_by_the_known_amounts():

@@ -280,6 +280,7 @@ def test_outside_the_formula_it_is_not_assessed(duration, reason):
     assert hv.temperature is None
     assert (hv.check.verdict, hv.check.reason) == ("not assessed", reason)
     assert outcomes(thermal)["thermal.HV.temperature"].reason == reason
+    assert (hv.comparisons, hv.shots) == ({}, None)
 
 
 def test_beyond_the_pole_there_is_no_temperature():

@@ -17,10 +17,10 @@ __all__ = ["reclosing"]
 def reclosing(given: HeatInputs, density: Step) -> tuple[tuple[Step, ...], Shots | None]:
     """Work out a second fault after a reclosing pause, for information; the slowest cooling is taken.
 
-    Nothing is worked out where no cooling is tabled for the immersion, or where the form does not hold.
+    Nothing is worked out where no cooling is tabled for the immersion, or where all heat cannot be taken as stored.
     """
     tabled = {row["immersion"]: row["greatest"] for row in table("winding_cooling").rows}
-    if given.immersion not in tabled:
+    if given.immersion not in tabled or given.duration.to("s") > withstand.ADIABATIC_TO:
         return (), None
     cooling = Quantity(tabled[given.immersion], "min")
     try:

@@ -216,8 +216,11 @@ def comparison_steps(given: HeatInputs, density: Step, frequency: Quantity, meth
     """Return what is shown beside the deciding form, by name: each with its steps, the last one the result.
 
     ``exact``; ``eddy`` with an eddy share; ``offset`` with a known X/R; ``other`` the other standard's form from the
-    same start. A form that does not hold for these inputs is left out.
+    same start. A form that does not hold for these inputs is left out; beyond the duration for which all heat is taken
+    as stored none holds.
     """
+    if given.duration.to("s") > withstand.ADIABATIC_TO:
+        return {}
     prefix = f"thermal.{given.winding}"
     other = METHODS["all heat stored" if method == "average temperature" else "average temperature"]
     heat = withstand.heat_integral.step(
