@@ -27,6 +27,7 @@ from throughfault.render.parts.verdict import open_point_part
 from throughfault.render.parts.verdict import verdict_part as render_verdict
 from throughfault.workbook.assess.review import Review
 from throughfault.workbook.figures import duty_figures, thermal_figures
+from throughfault.workbook.inputs import read_unit
 from throughfault.workbook.results import MIME
 
 __all__ = [
@@ -105,7 +106,7 @@ def open_review(inputs: str) -> Workbook:
     UnitFileError
         If the unit file is at fault; all faults in one report.
     """
-    return Workbook(Review(Path(inputs)))
+    return Workbook(Review(read_unit(Path(inputs) / "unit.toml")))
 
 
 def _whole(book: Workbook) -> dict[str, Any]:

@@ -69,7 +69,5 @@ def test_a_longer_fault_says_that_the_limit_is_derived():
     shorter = both_tapped().replace('duration = "2 s"\npeak', 'duration = "1 s"\npeak')
     check = checks(shorter, HV=Current(1.0, 1.0), LV=Current(0.5, 1.0))["tap_changer.short_time_current"]
     assert check.limit.value == pytest.approx(6.0 / math.sqrt(2.0))
-    assert check.limit.source == (
-        "unit file, tap_changer.short_time_current, heat integral kept for the longer fault"
-    )
+    assert check.limit.source == ("unit file, tap_changer.short_time_current, heat integral kept for the longer fault")
     assert check.limit.provenance == "derived"

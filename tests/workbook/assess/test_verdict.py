@@ -53,11 +53,11 @@ def test_a_recalled_limit_that_decides_is_a_blocking_point():
 
 def test_a_limit_no_check_takes_is_told():
     """A signatory's limit under an id that no check has is an open point with the nearest id."""
-    more = '\n[limits]\n"thermal.HV.temprature" = { value = "240 degC", source = "a licensed copy" }\n'
+    more = '\n[limits]\n"thermal.LV.temperature" = { value = "240 degC", source = "a licensed copy" }\n'
     unit = read_unit_text(T1 + more)
     points = conclude(unit, [check(200.0, "maker")]).fragment.open_points
     assert [point.text for point in points] == [
-        "limits.'thermal.HV.temprature': no check of this review takes this limit (did you mean 'thermal.HV.temperature'?)"
+        "limits.'thermal.LV.temperature': no check of this review takes this limit (did you mean 'thermal.HV.temperature'?)"
     ]
 
 

@@ -2,28 +2,32 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass, field, replace
 from functools import partial
 from typing import Any
 
 import numpy as np
 
-from throughfault.declare import Fragment, Missing, OpenPoint, Outcome, Step
+from throughfault.declare import ABILITIES, Check, Fragment, Missing, OpenPoint, Outcome, Step
 from throughfault.numerics.case import Floats
 from throughfault.quantities import Quantity
 from throughfault.workbook.assess.apparatus import apparatus_checks
+from throughfault.workbook.assess.closed_form import closed_form_steps
 from throughfault.workbook.assess.duty_entry import Largest, WindingDuty, case_entry, duty_outcomes
-from throughfault.workbook.assess.duty_step import CaseFacts, closed_form_steps, factor_outcomes, fault_steps, peak_step
+from throughfault.workbook.assess.duty_step import CaseFacts, factor_outcomes, fault_steps, peak_step
 from throughfault.workbook.assess.fault_case import FaultCase, fault_cases
 from throughfault.workbook.assess.fault_network import NetworkData
 from throughfault.workbook.assess.fault_solution import Solved, ratio_of, solve_cases
 from throughfault.workbook.assess.fault_wave import Wave, governing_wave
-from throughfault.workbook.assess.rules import RuleSet
-from throughfault.workbook.assess.through_fault import category_of
+from throughfault.workbook.assess.rules import RuleSet, category_of
 from throughfault.workbook.inputs import Unit
 
-__all__ = ["Duty", "Largest", "WindingDuty", "assess_duty"]
+__all__ = ["Duty", "Largest", "WindingDuty", "assess_duty", "completeness_checks"]
+
+EARTH_FAULT = "duty.earth_fault."
+#: what is missing under these ids hides cases that may govern
+HIDING = (EARTH_FAULT, "duty.infeed", "duty.tapping.")
 
 
 @dataclass(frozen=True)
@@ -68,10 +72,18 @@ def assess_duty(unit: Unit, rules: RuleSet) -> Duty:
     solved, unassessed = solve_cases(data, wanted)
     missing += unassessed
     if solved is None:
-        return Duty(
-            {n: _nothing() for n in unit.windings}, {}, {}, (), (), {}, category, Fragment(missing=tuple(missing))
-        )
+        nothing = Fragment(checks=completeness_checks(missing), missing=tuple(missing))
+        return Duty({n: _nothing() for n in unit.windings}, {}, {}, (), (), {}, category, nothing)
     return _duty(solved, data, missing)
+
+
+def completeness_checks(missing: Sequence[Missing]) -> tuple[Check, ...]:
+    """Return, where cases that apply could not be run, a check of each ability that is not assessed for it."""
+    hidden = [item.id for item in missing if item.id.startswith(HIDING)]
+    if not hidden:
+        return ()
+    reason = f"cases that apply could not be run: {', '.join(hidden)}"
+    return tuple(Check(f"duty.complete.{a}", None, "1", None, a, reason=reason) for a in ABILITIES)
 
 
 def _nothing() -> WindingDuty:
@@ -82,13 +94,14 @@ def _duty(solved: Solved, data: NetworkData, missing: list[Missing]) -> Duty:
     unit, names = solved.unit, list(solved.unit.windings)
     brought_out = [n for n, w in unit.windings.items() if not w.stabilising]
     earthed = [n for n in names if unit.earthing.get(n, "isolated") != "isolated"]
+    known = not any(item.id.startswith(EARTH_FAULT) for item in missing)
     largest = partial(_largest, solved)
     windings = {n: largest("winding", n) for n in names}
     entries = tuple(case_entry(solved, data.rules, number) for number in range(len(solved.cases)))
     duty = Duty(
         windings,
         {n: largest("terminal", n) for n in brought_out},
-        {n: largest("neutral", n) for n in earthed},
+        {n: largest("neutral", n) if known else _nothing() for n in earthed},
         solved.cases,
         entries,
         {n: _wave(solved, n, d) for n, d in windings.items()},
@@ -106,10 +119,14 @@ def _wave(solved: Solved, name: str, duty: WindingDuty) -> Wave | None:
 
 def _fragment(solved: Solved, data: NetworkData, duty: Duty, missing: list[Missing]) -> Fragment:
     steps, factors = _worked(solved, duty)
+    names = [case.name for case in solved.cases]
+    deciding = {name for w in duty.windings.values() for name in (w.symmetrical_case, w.peak_case)}
+    governing = [case for case in solved.cases if case.name in deciding]
+    checks = apparatus_checks(solved.unit, data.rules, duty.windings, duty.terminals, duty.neutrals)
     return Fragment(
-        quantities=(*duty_outcomes(duty), *factors),
-        steps=(*closed_form_steps(data), *steps),
-        checks=apparatus_checks(solved.unit, data.rules, duty.windings, duty.terminals, duty.neutrals),
+        quantities=(*duty_outcomes(duty, dict(zip(names, solved.factors, strict=True))), *factors),
+        steps=(*closed_form_steps(data, governing), *steps),
+        checks=(*checks, *completeness_checks(missing)),
         cases=duty.entries,
         missing=tuple(missing),
         open_points=_open_points(duty),
@@ -128,7 +145,7 @@ def _worked(solved: Solved, duty: Duty) -> tuple[list[Step], list[Outcome]]:
         at = number[winding.peak_case]
         case, facts = solved.cases[at], _facts(solved, at)
         if case.name not in shown:  # windings that one case governs share its lines
-            steps += fault_steps(name, case, facts)
+            steps += fault_steps(name, case, facts, delta=solved.unit.connections[case.at].letter == "D")
         steps += peak_step(name, facts)
         shown.add(case.name)
         outcomes += factor_outcomes(name, case, facts)

@@ -10,11 +10,12 @@ import numpy as np
 
 from throughfault.declare import Outcome
 from throughfault.workbook.assess.fault_solution import Solved
-from throughfault.workbook.assess.rules import RuleSet
+from throughfault.workbook.assess.rules import PeakFactor, RuleSet, separate_pair
 
 __all__ = ["Largest", "WindingDuty", "case_entry", "duty_outcomes"]
 
 PHASES = ("a", "b", "c")
+PEAK = r"\hat{\imath}"
 NETWORK = "fault_currents"
 THEORY = "CircuitTheory, phase-domain network"
 
@@ -86,8 +87,8 @@ def _phasors(currents: Any, factor: float | None) -> dict[str, dict[str, float |
 def case_entry(solved: Solved, rules: RuleSet, number: int) -> dict[str, Any]:
     """Return one case as it stands in the results file."""
     case, unit, factor = solved.cases[number], solved.unit, solved.factors[number]
-    separate = len(unit.windings) == 2 and not unit.group.auto
-    required = rules.required_by_standard(case.fault, two_winding=separate, phases=unit.rating.phases)
+    phases = 1 if unit.group.single_phase else 3
+    required = rules.required_by_standard(case.fault, two_winding=separate_pair(unit), phases=phases)
     winding, terminal = solved.currents("winding")[number], solved.currents("terminal")[number]
     neutral = solved.currents("neutral")[number]
     names = list(unit.windings)
@@ -99,7 +100,7 @@ def case_entry(solved: Solved, rules: RuleSet, number: int) -> dict[str, Any]:
         "at": case.at,
         "infeed": list(case.infeed),
         "variant": list(case.marks),
-        "required_by_standard": required and case.fault != "OP" and not case.variant.minimum,
+        "required_by_standard": required and case.fault != "OP" and not case.variant.minimum and bool(winding.any()),
         "driving_point": {"resistance": float(driving.real), "reactance": float(driving.imag), "unit": "ohm"},
         "peak_factor": {"value": factor.value, "how": factor.how, "source": factor.source},
         "currents": {n: _phasors(winding[i], factor.value) for i, n in enumerate(names)},
@@ -114,23 +115,32 @@ def case_entry(solved: Solved, rules: RuleSet, number: int) -> dict[str, Any]:
     }
 
 
-def _outcome(name: str, largest: Largest, symbol: str, cell: str) -> Outcome:
-    reason = None if largest.value is not None else "no case could be run for it, or the standard gives no peak factor"
-    return Outcome(name, largest.value, "kA", symbol, cell, THEORY, "derived", largest.case, reason)
+REASON = "no case could be run for it, or the standard gives no peak factor"
 
 
-def duty_outcomes(duty: Duties) -> tuple[Outcome, ...]:
-    """Return every largest current as a result."""
+def _outcome(name: str, largest: Largest, symbol: str) -> Outcome:
+    reason = None if largest.value is not None else REASON
+    return Outcome(name, largest.value, "kA", symbol, NETWORK, THEORY, "derived", largest.case, reason)
+
+
+def _peak_outcome(name: str, largest: Largest, factors: Mapping[str, PeakFactor]) -> Outcome:
+    """Make a peak of what the standard's factor makes of it: it is known as well as the factor is."""
+    if largest.value is None or largest.case is None:
+        return _outcome(name, largest, PEAK)
+    factor = factors[largest.case]
+    cell = "peak_short_circuit_current"
+    return Outcome(name, largest.value, "kA", PEAK, cell, factor.source, factor.provenance, largest.case)
+
+
+def duty_outcomes(duty: Duties, factors: Mapping[str, PeakFactor]) -> tuple[Outcome, ...]:
+    """Return every largest current as a result; `factors` gives the deciding peak factor of each case."""
     made = []
     for name, winding in duty.windings.items():
-        made.append(_outcome(f"duty.{name}.symmetrical", winding.symmetrical_current, "I", NETWORK))
-        made.append(_outcome(f"duty.{name}.peak", winding.peak_current, r"\hat{\imath}", "peak_short_circuit_current"))
-        made.append(_outcome(f"duty.{name}.peak_exact", winding.peak_exact, r"\hat{\imath}_e", NETWORK))
+        made.append(_outcome(f"duty.{name}.symmetrical", winding.symmetrical_current, "I"))
+        made.append(_peak_outcome(f"duty.{name}.peak", winding.peak_current, factors))
+        made.append(_outcome(f"duty.{name}.peak_exact", winding.peak_exact, r"\hat{\imath}_e"))
     for name, terminal in duty.terminals.items():
-        made.append(_outcome(f"duty.{name}.terminal_symmetrical", terminal.symmetrical_current, "I", NETWORK))
-        made.append(
-            _outcome(f"duty.{name}.terminal_peak", terminal.peak_current, r"\hat{\imath}", "peak_short_circuit_current")
-        )
-    for name, neutral in duty.neutrals.items():
-        made.append(_outcome(f"duty.neutral.{name}", neutral.symmetrical_current, "I_n", NETWORK))
+        made.append(_outcome(f"duty.{name}.terminal_symmetrical", terminal.symmetrical_current, "I"))
+        made.append(_peak_outcome(f"duty.{name}.terminal_peak", terminal.peak_current, factors))
+    made += [_outcome(f"duty.neutral.{name}", n.symmetrical_current, "I_n") for name, n in duty.neutrals.items()]
     return tuple(made)

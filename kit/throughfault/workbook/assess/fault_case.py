@@ -8,6 +8,7 @@ from itertools import product
 
 from throughfault.declare import Missing
 from throughfault.quantities import Quantity
+from throughfault.tables import table
 from throughfault.workbook.assess.rules import RuleSet
 from throughfault.workbook.inputs import Unit
 
@@ -26,8 +27,6 @@ __all__ = [
 EARTH_FAULTS = ("LG", "LLG")
 THREE_PHASE_KINDS = ("3ph", "LG", "LL", "LLG")
 OUT_OF_PHASE = "OP"
-#: with a delta on a three-limb core the zero-sequence impedance lies between these shares of the impedance
-ZERO_SEQUENCE_SHARES = (1.0, 0.85)
 
 
 @dataclass(frozen=True, slots=True)
@@ -154,7 +153,8 @@ def _shares(unit: Unit, fault: str) -> tuple[float, ...]:
     delta = any(connection.letter == "D" for connection in unit.group.windings)
     if fault not in EARTH_FAULTS or given or unit.rating.core != "three-limb" or not delta:
         return (1.0,)
-    return ZERO_SEQUENCE_SHARES
+    usual = table("iec60076_8_1997_zero_sequence_share").rows[0]
+    return (usual["share_greatest"], usual["share_least"])
 
 
 def _variants(unit: Unit, rules: RuleSet, at: str, fault: str, infeed: tuple[str, ...]) -> Iterator[Variant]:
@@ -183,6 +183,7 @@ def fault_cases(unit: Unit, rules: RuleSet) -> tuple[list[FaultCase], list[Missi
     missing += [_unknown_power(name) for name in stated_sources(unit) if source_power(unit, rules, name) is None]
     if not stated_sources(unit):
         missing.append(Missing("duty.infeed", ("system.<winding>.short_circuit_power",), "no terminal has an infeed"))
+    missing += _out_of_phase_alone(unit, rules)
     for tapping in unit.tappings:
         lacking = _lacking(unit, tapping)
         if lacking:
@@ -195,6 +196,16 @@ def fault_cases(unit: Unit, rules: RuleSet) -> tuple[list[FaultCase], list[Missi
                     variants = list(_variants(unit, rules, at, fault, infeed))
                     cases += [FaultCase(tapping, at, fault, infeed, v, _marks(v, variants[0])) for v in variants]
     return cases, missing
+
+
+def _out_of_phase_alone(unit: Unit, rules: RuleSet) -> list[Missing]:
+    """Return the terminals whose out-of-phase closing lacks a second network to close on."""
+    if len(sources_of(unit, rules)) > 1:
+        return []
+    asked = [n for n, given in unit.system.terminals.items() if given.out_of_phase is not None]
+    reason = "closing out of phase needs a network at another terminal too"
+    keys = ("system.<other winding>.short_circuit_power",)
+    return [Missing(f"duty.out_of_phase.{name}", keys, reason) for name in asked]
 
 
 def _unknown_power(name: str) -> Missing:

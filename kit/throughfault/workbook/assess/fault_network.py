@@ -15,7 +15,7 @@ from throughfault.numerics.connection import Letter, Transformer, Winding
 from throughfault.numerics.impedance import magnetising_path
 from throughfault.quantities import Quantity
 from throughfault.workbook.assess.fault_case import OUT_OF_PHASE, FaultCase, source_power
-from throughfault.workbook.assess.rules import Neglect, RuleSet
+from throughfault.workbook.assess.rules import Neglect, RuleSet, separate_pair
 from throughfault.workbook.inputs import Unit
 from throughfault.workbook.inputs.impedances import ImpedanceRow
 
@@ -76,7 +76,7 @@ class NetworkData:
         """Return one pair's impedance per unit of the common base."""
         size = row.impedance.to("p.u.")
         resistance = row.resistance_value.to("p.u.")
-        reactance = math.sqrt(max(self._reduced(row, size, tolerance=tolerance) ** 2 - resistance**2, 0.0))
+        reactance = math.sqrt(self._reduced(row, size, tolerance=tolerance) ** 2 - resistance**2)
         if self.direct_current and row.dc_resistance is not None:
             resistance = row.dc_resistance.to("p.u.")
         return complex(resistance, reactance) * self.base_power / self._row_base(row)
@@ -109,13 +109,16 @@ class NetworkData:
         return z1, z0
 
     def _interstar(self, name: str, case: FaultCase) -> complex:
-        """Return an interstar winding's own zero-sequence impedance, from the pair that gives it."""
+        """Return an interstar winding's own zero-sequence impedance, from the pair that gives it.
+
+        Without one its earth faults are not run, and no other fault depends on it: the impedance of the pair then
+        only keeps the equations well-conditioned.
+        """
         if self.unit.connections[name].letter != "Z":
             return 0j
-        others = (self.unit.impedance(name, other, case.tapping) for other in self.names if other != name)
-        row = next((r for r in others if r is not None and r.zero_sequence is not None), None)
-        if row is None:
-            return 0j
+        others = [self.unit.impedance(name, other, case.tapping) for other in self.names if other != name]
+        rows = [row for row in others if row is not None]
+        row = next((r for r in rows if r.zero_sequence is not None), rows[0])
         return self._zero_sequence(row, self._impedance(row, tolerance=case.variant.tolerance), 1.0)
 
     def magnetising(self, z0: Any) -> Any:
@@ -137,7 +140,7 @@ class NetworkData:
             )
         transformer = row.impedance.to("p.u.") * self.unit.voltage(name, tapping).to("V") ** 2 / self._row_base(row)
         share = abs(source_impedance(self.unit, name, power)) / transformer
-        return self.rules.source_neglected(self.category, share)
+        return self.rules.source_neglected(self.category, share, two_winding=separate_pair(self.unit))
 
     def sources(self, case: FaultCase) -> tuple[list[complex], list[complex]]:
         """Return positive- and zero-sequence impedances of the networks [winding] in ohm; infinite: no infeed."""
@@ -199,12 +202,20 @@ def _step(unit: Unit, case: FaultCase) -> float:
 
 
 def earth_fault_obstacle(unit: Unit, at: str) -> tuple[tuple[str, ...], str] | None:
-    """Return the missing keys and the reason why earth faults at a terminal cannot be assessed, or None."""
-    letters = [connection.letter for connection in unit.group.windings]
-    own = [row for row in unit.impedances if at in row.between and row.zero_sequence is not None]
-    if unit.connections[at].letter == "Z" and not own:
-        return ("impedances.zero_sequence",), "an interstar winding's own zero-sequence impedance is not given"
-    if unit.rating.core == "three-limb" and "D" not in letters and unit.zero_sequence is None:
+    """Return the missing keys and the reason why earth faults at a terminal cannot be assessed, or None.
+
+    Only a winding with an earthed neutral takes zero-sequence current from a fault at its own terminal.
+    """
+    letter = unit.connections[at].letter
+    owner = next(iter(unit.windings)) if letter == "auto" else at
+    if unit.earthing.get(owner, "isolated") == "isolated":
+        return None
+    if letter == "Z":  # its halves on one limb balance: no other path is needed
+        given = any(at in row.between and row.zero_sequence is not None for row in unit.impedances)
+        reason = "an interstar winding's own zero-sequence impedance is not given"
+        return None if given else (("impedances.zero_sequence",), reason)
+    delta = any(connection.letter == "D" for connection in unit.group.windings)
+    if unit.rating.core == "three-limb" and not delta and unit.zero_sequence is None:
         keys = ("zero_sequence.at", "zero_sequence.magnetising")
         return keys, "a three-limb unit without a delta has a zero-sequence path that must be measured"
     return None

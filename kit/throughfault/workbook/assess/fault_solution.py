@@ -9,6 +9,7 @@ from typing import Any
 import numpy as np
 
 from throughfault.declare import Missing
+from throughfault.errors import NetworkError
 from throughfault.numerics.case import Complexes, Floats
 from throughfault.numerics.connection import Transformer
 from throughfault.numerics.network import Solution, solve
@@ -64,10 +65,12 @@ def solve_cases(data: NetworkData, wanted: Sequence[FaultCase]) -> tuple[Solved 
     transformer = transformer_of(data.unit)
     if not wanted:
         return None, []
-    exists = solve(transformer, build_cases(data, transformer, wanted)).path_exists
-    with_path = [case for case, path in zip(wanted, exists, strict=True) if path]
-    missing = _obstacles(data.unit, with_path)
-    kept = [c for c in with_path if c.fault not in EARTH_FAULTS or earth_fault_obstacle(data.unit, c.at) is None]
+    missing = _obstacles(data.unit, wanted)
+    assessable = [c for c in wanted if c.fault not in EARTH_FAULTS or earth_fault_obstacle(data.unit, c.at) is None]
+    if not assessable:
+        return None, missing
+    exists = solve(transformer, build_cases(data, transformer, assessable)).path_exists
+    kept = [case for case, path in zip(assessable, exists, strict=True) if path]
     if not kept:
         return None, missing
     return _solved(data, transformer, kept), missing
@@ -106,8 +109,18 @@ def _obstacles(unit: Unit, cases: Sequence[FaultCase]) -> list[Missing]:
 
 
 def ratio_of(driving: complex) -> float:
-    """Return X/R of a driving-point impedance, infinite without resistance."""
-    return float("inf") if driving.real <= 0.0 else float(driving.imag / driving.real)
+    """Return X/R of a driving-point impedance, infinite without resistance.
+
+    Raises
+    ------
+    NetworkError
+        If the impedance would give energy.
+    """
+    if driving.real < -ROUNDING * abs(driving):
+        raise NetworkError(
+            f"the driving-point impedance at the fault must not have negative resistance, got {driving} ohm"
+        )
+    return float("inf") if driving.real <= ROUNDING * abs(driving) else float(driving.imag / driving.real)
 
 
 def _factor(data: NetworkData, case: FaultCase, driving: complex) -> PeakFactor:

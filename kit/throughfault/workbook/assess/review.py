@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 from functools import cached_property
-from pathlib import Path
 
 from throughfault.declare import Check, Fragment, Outcome, Step
 from throughfault.workbook.assess.declared import assess_declared
@@ -12,7 +11,7 @@ from throughfault.workbook.assess.requirement import Requirement, assess_require
 from throughfault.workbook.assess.rules import RuleSet, rules_for
 from throughfault.workbook.assess.thermal import Thermal, assess_thermal
 from throughfault.workbook.assess.verdict import Conclusion, conclude
-from throughfault.workbook.inputs import Unit, read_unit
+from throughfault.workbook.inputs import Unit
 
 __all__ = ["Review"]
 
@@ -22,12 +21,12 @@ class Review:
 
     Parameters
     ----------
-    inputs
-        Folder that holds ``unit.toml``.
+    unit
+        The unit file as read.
     """
 
-    def __init__(self, inputs: Path) -> None:
-        self.unit: Unit = read_unit(inputs / "unit.toml")
+    def __init__(self, unit: Unit) -> None:
+        self.unit = unit
 
     @cached_property
     def rules(self) -> RuleSet:

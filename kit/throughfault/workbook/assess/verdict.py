@@ -76,7 +76,8 @@ def _unconfirmed_point(check: Check) -> OpenPoint:
 def _unused_limits(unit: Unit, checks: Sequence[Check]) -> Iterator[OpenPoint]:
     """Yield a point for each limit of the unit file that no check of this review takes."""
     known = {check.id for check in checks}
+    told = {point.id for point in unit.warnings}
     for name, limit in unit.limits.items():
-        if name not in known:
+        if name not in known and f"input.limits.{name}" not in told:
             template = f"limits.'{name}': no check of this review takes this limit{did_you_mean(name, known)}"
             yield OpenPoint(f"limits.{name}", template, clause=limit.source)
