@@ -91,8 +91,8 @@ def double_line_to_earth_current(
 
 
 @cell(
-    title="X/R at a line-to-line fault",
-    source=Source("Wagner-Evans-1933", "line-to-line fault, sequence networks in series", "derived"),
+    title="X/R at a three-phase or line-to-line fault",
+    source=Source("Wagner-Evans-1933", "three-phase and line-to-line fault, sequence networks", "derived"),
     valid_for=(Range("resistance_1", above=0.0), SEQUENCE[1]),
     checks=(f"{TESTS}::test_equal_sequences_have_the_ratio_of_one: with Z0 = Z1",),
 )
