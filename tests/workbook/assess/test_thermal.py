@@ -8,6 +8,7 @@ import numpy as np
 import pytest
 
 from throughfault.cells.thermal_withstand import average_temperature_aluminium, average_temperature_copper
+from throughfault.declare import Missing
 from throughfault.errors import InputError
 from throughfault.workbook.assess.duty import assess_duty
 from throughfault.workbook.assess.rules import rules_for
@@ -270,17 +271,77 @@ def test_default_duration_is_the_standards():
     assert (found.value, found.provenance, found.source) == (2.0, "recalled", "IEC60076-5:2006, 4.1.3, 4.1.5")
 
 
-@pytest.mark.parametrize(("duration", "reason"), [
-    ("12 s", "average_temperature_copper: 'duration' must be above 0 and at most 10 s (IEC60076-5:2006, 4.1.5), got 12 s."),
+@pytest.mark.parametrize(("standard", "clause"), [
+    ((), "IEC60076-5:2006, 4.1.5"),
+    ((IEEE,), "IEEEC57.12.00-2015, 7.4"),
 ])  # fmt: skip
-def test_outside_the_formula_it_is_not_assessed(duration, reason):
-    """A duration beyond the range of the form gives no number and no verdict, but the reason."""
-    thermal = assessed(('fault_duration = "2 s"', f'fault_duration = "{duration}"'))
+def test_a_fault_longer_than_the_form_holds_is_not_assessed(standard, clause):
+    """A duration beyond the range of the form gives no number and no verdict, but the reason and the key to change."""
+    thermal = assessed(*standard, ('fault_duration = "2 s"', 'fault_duration = "12 s"'))
+    reason = f"rating.fault_duration is 12 s, longer than the 10 s for which the adiabatic form holds ({clause})"
+    assert thermal.fragment.missing[0] == Missing("thermal.HV.temperature", ("rating.fault_duration",), reason)
     hv = thermal.windings["HV"]
     assert hv.temperature is None
     assert (hv.check.verdict, hv.check.reason) == ("not assessed", reason)
     assert outcomes(thermal)["thermal.HV.temperature"].reason == reason
     assert (hv.comparisons, hv.shots) == ({}, None)
+
+
+def test_a_windings_own_fault_duration_is_named():
+    """Where the winding has a duration of its own, that key is the one to change."""
+    own = ("eddy_share = 0.10", 'eddy_share = 0.10\nfault_duration = "11 s"')
+    (missing,) = assessed(own).fragment.missing
+    assert missing.keys == ("windings.HV.fault_duration",)
+    assert missing.reason.startswith("windings.HV.fault_duration is 11 s, longer than the 10 s ")
+
+
+@pytest.mark.parametrize(("standard", "current"), [((), 10.0), ((IEEE,), 20.0)], ids=["IEC", "IEEE"])
+def test_beyond_the_form_the_permissible_duration_decides(standard, current):
+    """Without a temperature, a fault that outlasts the permissible duration is past the limit all the same."""
+    thermal = assessed(*standard, duty=duty_of(HV=current, LV=3.4))
+    hv = thermal.windings["HV"]
+    temperature, duration = (c for c in thermal.fragment.checks if c.id.startswith("thermal.HV."))
+    assert (temperature.id, temperature.verdict) == ("thermal.HV.temperature", "not assessed")
+    assert (duration.id, duration.unit, duration.ability) == ("thermal.HV.permissible_duration", "s", "thermal")
+    assert (duration.value, duration.limit.value, duration.limit.sense) == (hv.permissible_duration, 2.0, "at least")
+    assert duration.value < 2.0
+    assert (duration.verdict, duration.governing_case) == ("exceeds", CASE)
+    assert duration.limit.source.startswith("unit file, rating.fault_duration; the limit reached is that of ")
+    assert duration.unconfirmed  # the temperature that is reached is recalled
+
+
+def test_a_confirmed_limit_leaves_the_duration_as_given():
+    """With the signatory's limit the check stands on the duration alone and is as well known as that."""
+    own = '[limits]\n"thermal.HV.temperature" = { value = "250 degC", source = "read" }\n[windings.HV]'
+    confirmed = ("[windings.HV]", own)
+    check = assessed(confirmed, duty=duty_of(HV=10.0, LV=3.4)).fragment.checks[1]
+    assert (check.limit.source, check.limit.provenance) == ("unit file, rating.fault_duration", "maker")
+    by_standard = ('fault_duration = "2 s"\n', "")
+    check = assessed(confirmed, by_standard, duty=duty_of(HV=10.0, LV=3.4)).fragment.checks[1]
+    assert (check.limit.source, check.limit.provenance) == ("IEC60076-5:2006, 4.1.3, 4.1.5", "recalled")
+
+
+def test_the_permissible_duration_decides_nothing_beside_a_temperature():
+    """With a temperature, or beyond the duration for which the form holds, it is no check."""
+    hot = assessed(duty=duty_of(HV=4.0, LV=3.4))
+    assert hot.windings["HV"].permissible_duration < 2.0
+    assert [c.id for c in hot.fragment.checks] == ["thermal.HV.temperature", "thermal.LV.temperature"]
+    long = assessed(('fault_duration = "2 s"', 'fault_duration = "12 s"'), duty=duty_of(HV=4.0, LV=3.4))
+    assert long.windings["HV"].permissible_duration < 2.0
+    assert {c.verdict for c in long.fragment.checks} == {"not assessed"}
+    assert len(long.fragment.checks) == 2
+
+
+@pytest.mark.parametrize("standard", [(), (IEEE,)], ids=["IEC", "IEEE"])
+@pytest.mark.parametrize("section", ["0.001 mm^2", "1e-9 mm^2"])
+def test_a_section_of_nearly_nothing_ends_in_no_number(standard, section):
+    """However high the density, there is a reason and no failure; what can be drawn is finite."""
+    thermal = assessed(*standard, ('"25 mm^2"', f'"{section}"'))
+    hv = thermal.windings["HV"]
+    assert (hv.temperature, hv.check.verdict) == (None, "not assessed")
+    assert hv.check.reason
+    assert hv.shots is None
+    assert all(np.all(np.isfinite(line)) for line in hv.curve.values())
 
 
 def test_beyond_the_pole_there_is_no_temperature():

@@ -12,6 +12,13 @@ from throughfault.numerics.heat import Shots
 from throughfault.quantities import Quantity
 from throughfault.workbook.assess.reclosing import reclosing
 from throughfault.workbook.assess.rules import LimitOrReason, RuleSet, Tabled, category_of
+from throughfault.workbook.assess.thermal_duration import (
+    LONGER,
+    duration_check,
+    not_worked_out,
+    permissible_duration,
+    too_long,
+)
 from throughfault.workbook.assess.thermal_inputs import (
     DutyLike,
     HeatInputs,
@@ -35,7 +42,6 @@ LABELS = {
     "offset": "exact, with decaying offset",
     "other": "form of the other standard, from the same start",
 }
-LONGER = f"longer than the {withstand.ADIABATIC_TO:g} s for which the adiabatic form holds"
 BEYOND = 1.25  # plots run this much beyond the duration or the permissible duration
 
 
@@ -196,15 +202,16 @@ def _assessed(
         f"thermal.{given.winding}.density", winding_current=given.current, conductor_section=given.section
     )
     temperature, found = _deciding(common, given, density)
-    allowed, more = _permissible(common, given, density, limit.limit)
+    allowed, more = permissible_duration(common.method, given, density, limit.limit)
     beside = comparison_steps(given, density, frequency, common.method)
     again, shots = reclosing(given, density)
     shown = {k: (LABELS[k], Outcome.of_step(s[-1], governing_case=given.case)) for k, s in beside.items()}
-    check, missing = _check(temperature, limit, given.case)
+    check, missing = _check(common, temperature, limit, given)
     first, *last = (Outcome.of_step(step, governing_case=given.case) for step in (density, *again[-1:]))
     results = (first, temperature, allowed, *(outcome for _, outcome in shown.values()), *last)
     quantities = (*common.outcomes, *_multiple_outcome(common, steps), *results)
     every = (*steps, density, *found, *more, *(step for s in beside.values() for step in s), *again)
+    checks = (check, *duration_check(given, temperature, allowed, common.duration, limit.limit))
     points = (*_limit_points(given.winding, limit), *_points(given, check, shown))
     return _made(
         common, limit.limit, check,
@@ -214,7 +221,7 @@ def _assessed(
         comparisons=shown,
         curve=_curve(given, density, common.method, allowed, beside),
         shots=shots,
-        fragment=Fragment(quantities, every, (check,), missing=missing, open_points=points),
+        fragment=Fragment(quantities, every, checks, missing=missing, open_points=points),
     )  # fmt: skip
 
 
@@ -230,42 +237,28 @@ def _curve(
 def _deciding(common: _Common, given: HeatInputs, density: Step) -> tuple[Outcome, tuple[Step, ...]]:
     """Work out the temperature by the standard's form; outside its range it is not assessed."""
     id_ = f"thermal.{given.winding}.temperature"
+    unknown = too_long(common.method, given, common.duration, id_)
+    if unknown is not None:
+        return not_worked_out(id_, "degC", r"\theta_1", given.case, unknown.reason), ()
     try:
         steps = METHODS[common.method].temperature(given, density, id_)
     except OutsideValidity as outside:
-        return _outside(id_, "degC", r"\theta_1", given.case, outside), ()
+        return not_worked_out(id_, "degC", r"\theta_1", given.case, str(outside)), ()
     return Outcome.of_step(steps[-1], governing_case=given.case), steps
 
 
-def _permissible(
-    common: _Common, given: HeatInputs, density: Step, limit: Limit | None
-) -> tuple[Outcome, tuple[Step, ...]]:
-    id_ = f"thermal.{given.winding}.permissible_duration"
-    if limit is None:
-        none = OutsideValidity("there is no limit to reach")
-        return _outside(id_, "s", r"t_{\max}", given.case, none), ()
-    try:
-        steps = METHODS[common.method].permissible(given, density, limit, id_)
-    except OutsideValidity as outside:
-        return _outside(id_, "s", r"t_{\max}", given.case, outside), ()
-    if steps[-1].result.to("s") > withstand.ADIABATIC_TO:
-        return _outside(id_, "s", r"t_{\max}", given.case, OutsideValidity(LONGER)), ()
-    return Outcome.of_step(steps[-1], governing_case=given.case), steps
-
-
-def _outside(id_: str, unit: str, symbol: str, case: str | None, why: OutsideValidity) -> Outcome:
-    return Outcome(id_, None, unit, symbol, "", "-", "derived", case, str(why))
-
-
-def _check(temperature: Outcome, limit: LimitOrReason, case: str | None) -> tuple[Check, tuple[Missing, ...]]:
+def _check(
+    common: _Common, temperature: Outcome, limit: LimitOrReason, given: HeatInputs
+) -> tuple[Check, tuple[Missing, ...]]:
     reason = temperature.reason
-    missing: tuple[Missing, ...] = ()
+    unknown = too_long(common.method, given, common.duration, temperature.id)
+    missing: tuple[Missing, ...] = () if unknown is None else (unknown,)
     if limit.limit is None:
         reason = reason or limit.reason
-        missing = (Missing(temperature.id, (limit.key,), limit.reason),)
+        missing += (Missing(temperature.id, (limit.key,), limit.reason),)
     elif not limit.limit.decides:
         reason = reason or "the recalled limit is uncertain; a signatory's own figure is needed"
-    return Check(temperature.id, temperature.value, "degC", limit.limit, "thermal", case, reason), missing
+    return Check(temperature.id, temperature.value, "degC", limit.limit, "thermal", given.case, reason), missing
 
 
 def _limit_points(winding: str, limit: LimitOrReason) -> tuple[OpenPoint, ...]:

@@ -2,7 +2,8 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
+from collections.abc import Callable, Iterator
+from contextlib import contextmanager
 from dataclasses import dataclass
 
 import numpy as np
@@ -53,6 +54,23 @@ def conductor_of(given: HeatInputs) -> Conductor:
     if given.reference is None:
         return Conductor(row["constant"], row["temperature_offset"])
     return Conductor(row["constant"], row["temperature_offset"], given.eddy_share, given.reference.to("degC"))
+
+
+@contextmanager
+def computable(name: str) -> Iterator[None]:
+    """Say of numbers that no float holds that they are outside what the form holds for.
+
+    Raises
+    ------
+    OutsideValidity
+        In the place of an overflow.
+    """
+    try:
+        yield
+    except OverflowError:
+        raise OutsideValidity(
+            f"{name}: the current density is too high for the temperature to have a number."
+        ) from None
 
 
 def _average(given: HeatInputs, density: Step, id_: str) -> tuple[Step, ...]:
@@ -116,18 +134,20 @@ def _content(given: HeatInputs, final: Quantity, id_: str) -> Step:
 def final_temperature(given: HeatInputs, density: float, duration: float) -> float:
     """Return the all-heat-stored temperature in degC for any density and duration."""
     reference = given.reference.to("degC") if given.reference is not None else given.start.to("degC")
-    return float(
-        stored.final_temperature_all_heat_stored(
-            material=given.material,
-            start_temperature=given.start.to("degC"),
-            current_density=density,
-            duration=duration,
-            eddy_share=given.eddy_share,
-            reference_temperature=reference,
-            insulation_section=given.insulation.to("mm^2"),
-            conductor_section=given.section.to("mm^2"),
+    form = stored.final_temperature_all_heat_stored
+    with computable(form.name):
+        return float(
+            form(
+                material=given.material,
+                start_temperature=given.start.to("degC"),
+                current_density=density,
+                duration=duration,
+                eddy_share=given.eddy_share,
+                reference_temperature=reference,
+                insulation_section=given.insulation.to("mm^2"),
+                conductor_section=given.section.to("mm^2"),
+            )
         )
-    )
 
 
 def _stored(given: HeatInputs, density: Step, id_: str) -> tuple[Step, ...]:
@@ -246,7 +266,20 @@ def comparison_steps(given: HeatInputs, density: Step, frequency: Quantity, meth
 def curve_of(
     given: HeatInputs, density: float, method: str, until: float, time_constant: float | None
 ) -> dict[str, Floats]:
-    """Return ``time`` (s) and, in degC, ``standard``, ``exact`` and, with a time constant, ``offset`` for a plot."""
+    """Return ``time`` (s) and, in degC, ``standard``, ``exact`` and, with a time constant, ``offset`` for a plot.
+
+    Nothing is returned where the current density is beyond what can be drawn.
+    """
+    try:
+        with computable("curve"):
+            return _curve(given, density, method, until, time_constant)
+    except OutsideValidity:
+        return {}
+
+
+def _curve(
+    given: HeatInputs, density: float, method: str, until: float, time_constant: float | None
+) -> dict[str, Floats]:
     material = conductor_of(given)
     start = given.start.to("degC")
     end = min(until, withstand.ADIABATIC_TO, SHORT_OF_THE_POLE * material.constant / density**2)
