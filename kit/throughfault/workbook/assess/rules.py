@@ -145,7 +145,11 @@ class RuleSet(Protocol):
         """Return the combinations of sources to run for a fault at a winding's terminals."""
 
     def required_by_standard(self, fault: str, *, two_winding: bool, phases: int = 3) -> bool:
-        """Tell whether the standard requires a fault (``two_winding``: two separate windings, no auto)."""
+        """Tell whether the standard requires a fault.
+
+        ``two_winding``: two separate windings, no autotransformer. ``phases``: of the network that the unit serves,
+        1 only with a single-phase vector group; a bank of single-phase units with a three-phase group counts as 3.
+        """
 
     def peak_factor(self, x_over_r: float, category: str | None, given: float | None = None) -> PeakFactor:
         """Return the factor that decides; ``x_over_r`` may be infinite."""

@@ -105,8 +105,8 @@ class Iec60076Part5:
         return every_combination(sources)
 
     def required_by_standard(self, fault: str, *, two_winding: bool, phases: int = 3) -> bool:
-        """Require the three-phase fault of two separate windings, else every kind."""
-        return fault == "3ph" if two_winding and phases != 1 else True
+        """Require the three-phase fault alone of two separate windings on a three-phase network, else every kind."""
+        return not (two_winding and phases == 3) or fault == "3ph"
 
     def peak_factor(self, x_over_r: float, category: str | None, given: float | None = None) -> PeakFactor:
         """Take the table between its ends, the exact first maximum below, the default above unless one is given."""
