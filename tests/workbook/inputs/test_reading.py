@@ -1,5 +1,6 @@
 """From bytes to a unit: what is refused before and while the text is parsed."""
 
+import os
 import re
 
 import pytest
@@ -46,30 +47,43 @@ def reported(tmp_path, data):
 def test_bytes_that_are_no_unit_file(name, tmp_path):
     """What cannot be read at all is refused in one sentence."""
     data, message = BYTES[name]
-    assert reported(tmp_path, data).faults == (message,)
+    assert reported(tmp_path, data).faults == (f"{tmp_path}/{message}",)
 
 
 def test_deep_tables_are_unknown_keys(tmp_path):
     """Tables nested by hundreds of dotted keys are refused like any unknown key."""
+    path = f"{tmp_path}/unit.toml"
     faults = reported(tmp_path, b"[" + b"a." * 400 + b"a]\n" + b"b." * 400 + b"b = 1\n").faults
     assert [f for f in faults if "not a known key" in f] == [
         (
-            "unit.toml: a: is not a known key; known here: format, standard, identity, rating, windings, impedances, "
+            f"{path}: a: is not a known key; known here: format, standard, identity, rating, windings, impedances, "
             "system, earthing, zero_sequence, tap_changer, bushings, neutral, design, limits, declared."
         )
     ]
 
 
 def test_a_missing_file(tmp_path):
-    """A file that is not there is bad input, and its folder is not told."""
-    with pytest.raises(UnitFileError, match=re.escape("unit.toml: cannot be read: No such file or directory.")):
-        read_unit(tmp_path / "unit.toml")
+    """A file that is not there is bad input; the path is told as it was given."""
+    with pytest.raises(UnitFileError) as caught:
+        read_unit(tmp_path / "none.toml")
+    assert str(caught.value) == f"{tmp_path}/none.toml: cannot be read: No such file or directory."
 
 
-def test_a_folder(tmp_path):
-    """A folder is bad input."""
-    with pytest.raises(UnitFileError, match=re.escape(": cannot be read: Is a directory.")):
-        read_unit(tmp_path)
+@pytest.mark.parametrize("folder", [".", ".."])
+def test_a_folder(folder):
+    """A folder is bad input, named as it was given."""
+    with pytest.raises(UnitFileError) as caught:
+        read_unit(folder)
+    assert str(caught.value) == f"{folder}: cannot be read: Is a directory."
+
+
+@pytest.mark.skipif(not hasattr(os, "mkfifo"), reason="has no named pipes")
+def test_a_named_pipe_is_not_waited_for(tmp_path):
+    """A pipe that nobody writes to is refused, not read."""
+    os.mkfifo(tmp_path / "pipe")
+    with pytest.raises(UnitFileError) as caught:
+        read_unit(tmp_path / "pipe")
+    assert str(caught.value) == f"{tmp_path}/pipe: cannot be read: must be a regular file."
 
 
 def test_a_path_that_cannot_be():

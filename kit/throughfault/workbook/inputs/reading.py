@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import re
+import stat
 import tomllib
 from collections.abc import Callable, Iterable
 from dataclasses import replace
@@ -36,7 +37,7 @@ def read_unit(path: str | Path, extra_warnings: ExtraWarnings = ()) -> Unit:
     Parameters
     ----------
     path
-        The file, at most 1 MiB of UTF-8 text.
+        The file, a regular one of at most 1 MiB of UTF-8 text.
     extra_warnings
         Further functions that look for open points, such as comparisons with a standard's tables.
 
@@ -45,14 +46,21 @@ def read_unit(path: str | Path, extra_warnings: ExtraWarnings = ()) -> Unit:
     UnitFileError
         With every fault found.
     """
-    name = _quiet(Path(path).name)
+    return read_unit_text(_text_of(path), str(path), extra_warnings)
+
+
+def _text_of(path: str | Path) -> str:
+    name = _printable(str(path))
     try:
+        mode = Path(path).stat().st_mode
+        if not (stat.S_ISREG(mode) or stat.S_ISDIR(mode)):  # reading a pipe might never end; a folder says so itself
+            raise UnitFileError(f"{name}: cannot be read: must be a regular file.")
         with Path(path).open("rb") as file:
             data = file.read(LARGEST_FILE + 1)
     except (OSError, ValueError) as error:
         reason = error.strerror if isinstance(error, OSError) and error.strerror else "the path is not valid"
         raise UnitFileError(f"{name}: cannot be read: {reason}.") from None
-    return read_unit_text(_decoded(data, name), name, extra_warnings)
+    return _decoded(data, name)
 
 
 def read_unit_text(text: str, name: str = "unit.toml", extra_warnings: ExtraWarnings = ()) -> Unit:
@@ -63,6 +71,7 @@ def read_unit_text(text: str, name: str = "unit.toml", extra_warnings: ExtraWarn
     UnitFileError
         With every fault found.
     """
+    name = _printable(name)
     raw = _parsed(text, name)
     faults: list[Fault] = []
     file = None
@@ -114,5 +123,9 @@ def _toml_fault(text: str, name: str) -> str:
 
 
 def _quiet(text: str) -> str:
-    """Return the text without control characters, for a message."""
-    return "".join(c if c.isprintable() else "?" for c in text)[:200]
+    """Return the text without control characters and of bounded length, for a message."""
+    return _printable(text)[:200]
+
+
+def _printable(text: str) -> str:
+    return "".join(c if c.isprintable() else "?" for c in text)
