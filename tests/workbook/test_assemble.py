@@ -56,13 +56,46 @@ def test_the_name_is_no_path(name, tmp_path):
 
 
 def test_a_full_disk_leaves_no_half_template(tmp_path, monkeypatch):
-    """When writing fails nothing is left under the name."""
+    """When writing fails nothing is left under the name, and a sentence says why."""
 
     def full(self, data):
         self.touch()
         raise OSError(28, "No space left on device")
 
     monkeypatch.setattr("pathlib.Path.write_bytes", full)
-    with pytest.raises(OSError, match="No space left"):
+    with pytest.raises(InputError) as fault:
         write_template(["duty"], "mine", tmp_path)
+    assert str(fault.value) == f"{tmp_path}/mine.ipynb: cannot be written (No space left on device)."
     assert list(tmp_path.iterdir()) == []
+
+
+def test_a_template_of_nothing_is_refused(tmp_path):
+    """Without a name there is nothing to build."""
+    with pytest.raises(InputError) as fault:
+        write_template([], "mine", tmp_path)
+    assert str(fault.value) == "--cells: must name at least one part of a workbook or cell of the library, got none."
+    assert list(tmp_path.iterdir()) == []
+
+
+@pytest.mark.parametrize("name", ["rating", "rating.ipynb"])
+def test_the_name_of_a_shipped_template_is_taken(tmp_path, name):
+    """A name under which the kit's own template would be found is refused unless asked for."""
+    with pytest.raises(InputError) as fault:
+        write_template(["duty"], name, tmp_path)
+    assert str(fault.value) == (
+        "NAME: 'rating' is a template of the kit, which would be found first; take another name "
+        "(--replace would write it all the same)."
+    )
+    assert list(tmp_path.iterdir()) == []
+    assert write_template(["duty"], name, tmp_path, replace=True).name == "rating.ipynb"
+
+
+def test_a_template_is_replaced_only_when_asked(tmp_path):
+    """What stands there stays unless it is to be replaced."""
+    target = write_template(["duty"], "mine", tmp_path)
+    with pytest.raises(InputError) as fault:
+        write_template(["thermal"], "mine", tmp_path)
+    assert str(fault.value) == f"{target}: exists already; --replace would replace it."
+    assert read_template(target).notebook.metadata.throughfault.cells == ["duty"]
+    write_template(["thermal"], "mine", tmp_path, replace=True)
+    assert read_template(target).notebook.metadata.throughfault.cells == ["thermal"]

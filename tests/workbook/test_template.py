@@ -1,5 +1,7 @@
 """Templates: guarded before anything runs."""
 
+from pathlib import Path
+
 import nbformat
 import pytest
 from nbformat.v4 import new_code_cell, new_markdown_cell, new_notebook, new_output
@@ -176,3 +178,14 @@ def test_a_template_of_ones_own_is_found_by_name(tmp_path, monkeypatch):
     monkeypatch.chdir(tmp_path)
     assert find_template("own").resolve() == path
     assert not read_template(find_template(str(path))).shipped
+
+
+@pytest.mark.parametrize(
+    ("name", "reason"),
+    [("nope", "cannot be read (No such file or directory)"), (".", "is no file")],
+)
+def test_a_path_that_cannot_be_read_is_refused(name, reason):
+    """What is not there, or is a folder, is named in a sentence."""
+    with pytest.raises(TemplateError) as fault:
+        read_template(Path(name))
+    assert str(fault.value) == f"--template: must be the path of a .ipynb file, got {name!r}, which {reason}."

@@ -17,7 +17,7 @@ KINDS = ("two-winding", "three-winding", "auto", "distribution")
 @click.option("--kind", type=click.Choice(KINDS), default="two-winding", show_default=True)
 @click.option("--out", metavar="FILE", type=click.Path(path_type=Path), help="Where to write it. [default: TAG.toml]")
 def new(tag: str, kind: str, out: Path | None) -> None:
-    r"""Write a commented unit file to start from.
+    """Write a commented unit file to start from.
 
     \b
     Example: throughfault new BV-T9 --kind three-winding
@@ -39,7 +39,7 @@ def new(tag: str, kind: str, out: Path | None) -> None:
 
 @click.command()
 def schema() -> None:
-    r"""Print the JSON schema of the unit file, for editors that complete and check.
+    """Print the JSON schema of the unit file, for editors that complete and check.
 
     \b
     Example: throughfault schema > unit.schema.json
@@ -54,27 +54,24 @@ def schema() -> None:
 @click.option("--replace", is_flag=True, help="Replace a template of that name.")
 @click.argument("name", metavar="NAME")
 def assemble(names: str, name: str, *, replace: bool) -> None:
-    r"""Build ./templates/NAME.ipynb from the cell library.
+    """Build ./templates/NAME.ipynb from the cell library.
 
     What every record carries (summary, unit data, verdict, open points, signatures) is added when not named.
 
     \b
     Example: throughfault assemble --cells requirement,duty,thermal rating-again
     """
-    from throughfault.errors import InputError
     from throughfault.workbook.assemble import write_template
 
-    folder = Path("templates")
-    if (folder / f"{name}.ipynb").exists() and not replace:
-        raise InputError(f"{folder / name}.ipynb: exists already; --replace would replace it.")
-    target = write_template([cell.strip() for cell in names.split(",") if cell.strip()], name, folder)
+    cells = [cell.strip() for cell in names.split(",") if cell.strip()]
+    target = write_template(cells, name, Path("templates"), replace=replace)
     click.echo(f"{target}: written; run it with: throughfault review UNIT.toml --template {target}")
 
 
 @click.command()
 @click.argument("name", metavar="[NAME]", required=False)
 def cells(name: str | None) -> None:
-    r"""List the cell library, or show one cell: formula, symbols, units, source, range, checks behind it.
+    """List the cell library, or show one cell: formula, symbols, units, source, range, checks behind it.
 
     \b
     Example: throughfault cells average_temperature_copper

@@ -14,7 +14,7 @@ import throughfault.cells
 from throughfault.declare import registry
 from throughfault.errors import InputError, TemplateError, did_you_mean
 from throughfault.workbook.part import FRAME_AFTER, FRAME_BEFORE, PARTS
-from throughfault.workbook.template import template_faults
+from throughfault.workbook.template import shipped_templates, template_faults
 
 __all__ = ["assemble", "template_bytes", "write_template"]
 
@@ -32,6 +32,8 @@ def _names(cells: Sequence[str]) -> list[str]:
 
 
 def _faults(cells: Sequence[str]) -> list[str]:
+    if not cells:
+        return ["--cells: must name at least one part of a workbook or cell of the library, got none."]
     known = [*PARTS, *registry()]
     faults = [
         f"--cells: must name parts of a workbook or cells of the library, got '{name}'{did_you_mean(name, known)}."
@@ -80,19 +82,40 @@ def template_bytes(notebook: nbformat.NotebookNode) -> bytes:
     return (text.rstrip("\n") + "\n").encode("utf-8")
 
 
-def write_template(cells: Sequence[str], name: str, folder: Path) -> Path:
+def write_template(cells: Sequence[str], name: str, folder: Path, *, replace: bool = False) -> Path:
     """Assemble a template and write it whole as ``<folder>/<name>.ipynb``.
 
     Raises
     ------
     InputError
-        As `assemble`, or if the name is not a plain file name.
+        As `assemble`, or if the name is not a plain file name, is taken by a template and `replace` is not given, or
+        the file cannot be written.
     """
     if not name or Path(name).name != name or name.startswith("."):
         raise InputError(f"NAME: must be a plain name without folder, got '{name}'.")
-    data = template_bytes(assemble(cells))
-    folder.mkdir(parents=True, exist_ok=True)
     target = folder / f"{name.removesuffix('.ipynb')}.ipynb"
+    if not replace:
+        _refuse_taken(target)
+    data = template_bytes(assemble(cells))
+    try:
+        folder.mkdir(parents=True, exist_ok=True)
+        _write_whole(target, data)
+    except OSError as fault:
+        raise InputError(f"{target}: cannot be written ({fault.strerror}).") from fault
+    return target
+
+
+def _refuse_taken(target: Path) -> None:
+    if target.exists():
+        raise InputError(f"{target}: exists already; --replace would replace it.")
+    if target.stem in shipped_templates():
+        raise InputError(
+            f"NAME: '{target.stem}' is a template of the kit, which would be found first; take another name "
+            "(--replace would write it all the same)."
+        )
+
+
+def _write_whole(target: Path, data: bytes) -> None:
     temporary = target.with_name(f".{target.name}.{os.getpid()}.part")
     try:
         temporary.write_bytes(data)
@@ -100,4 +123,3 @@ def write_template(cells: Sequence[str], name: str, folder: Path) -> Path:
     finally:
         with contextlib.suppress(FileNotFoundError):
             temporary.unlink()
-    return target

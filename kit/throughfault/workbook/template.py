@@ -70,10 +70,10 @@ def read_template(path: Path) -> Template:
     Raises
     ------
     TemplateError
-        With every fault: not a notebook, outputs left in, unknown tags, no or several parameters cells,
+        With every fault: cannot be read, not a notebook, outputs left in, unknown tags, no or several parameters cells,
         code that does more than call `throughfault.notebook`.
     """
-    data = path.read_bytes()
+    data = _bytes_of(path)
     try:
         notebook = nbformat.reads(data.decode("utf-8"), as_version=nbformat.NO_CONVERT)
         nbformat.validate(notebook)
@@ -85,6 +85,17 @@ def read_template(path: Path) -> Template:
         raise TemplateError(faults)
     shipped = path.resolve().parent == templates_folder().resolve()
     return Template(path.stem, data, hashlib.sha256(data).hexdigest(), notebook, shipped)
+
+
+def _bytes_of(path: Path) -> bytes:
+    if path.exists() and not path.is_file():  # a named pipe would never end
+        raise TemplateError(f"--template: must be the path of a .ipynb file, got '{path}', which is no file.")
+    try:
+        return path.read_bytes()
+    except OSError as fault:
+        raise TemplateError(
+            f"--template: must be the path of a .ipynb file, got '{path}', which cannot be read ({fault.strerror})."
+        ) from None
 
 
 def template_faults(notebook: nbformat.NotebookNode, name: str) -> list[str]:
