@@ -13,6 +13,7 @@ from typing import Any
 
 from throughfault import __version__
 from throughfault.errors import RecordError
+from throughfault.workbook.assess.rules import rules_for
 from throughfault.workbook.inputs import read_unit
 from throughfault.workbook.resources import changes_file
 from throughfault.workbook.results import read_results
@@ -149,26 +150,36 @@ def reproduce(record: Path, template: Path | None = None, *, progress: bool = Fa
     Raises
     ------
     RecordError
-        If the record cannot be read, or the template needed is not at hand.
+        If the record cannot be read, the template needed is not at hand, or there is no room for a second run.
     UnitFileError
         If its unit file is at fault.
+    InputError
+        If it names a standard that the kit does not carry.
     RunError
         If the workbook cannot be executed.
     """
     old = read_results(record)
-    read_unit(record / "inputs" / UNIT_FILE)
+    rules_for(read_unit(record / "inputs" / UNIT_FILE))
     chosen, notes = _template_of(old, template)
     was = old["kit"]["version"]
     if was != __version__:
         notes.append(f"kit: the record was made with {was}, this is {__version__}")
         notes += _changes_since(was)
     inputs = {p.relative_to(record / "inputs").as_posix(): p.read_bytes() for p in _files(record / "inputs")}
-    with tempfile.TemporaryDirectory(prefix="throughfault-") as folder:
-        new = fill_record(Path(folder), inputs, chosen, progress=progress)
+    new = _run_again(inputs, chosen, progress=progress)
     differences, compared = compare_results(old, json.loads(json.dumps(new)))
     if old["inputs_sha256"] != new["inputs_sha256"]:
         differences.insert(0, "inputs_sha256: the inputs are not those of the results")
     return Comparison(tuple(differences), tuple(notes), compared)
+
+
+def _run_again(inputs: Mapping[str, bytes], template: Template, *, progress: bool) -> dict[str, Any]:
+    try:
+        with tempfile.TemporaryDirectory(prefix="throughfault-") as folder:
+            return fill_record(Path(folder), inputs, template, progress=progress)
+    except OSError as fault:
+        where = tempfile.gettempdir()
+        raise RecordError(f"{where}: the second run could not be written there ({fault.strerror}).") from fault
 
 
 def _files(folder: Path) -> list[Path]:

@@ -17,6 +17,7 @@ from papermill.exceptions import PapermillExecutionError
 from throughfault import __version__
 from throughfault.errors import RecordError, RunError
 from throughfault.render.record import export_record, lint, normalise
+from throughfault.workbook.assess.rules import rules_for
 from throughfault.workbook.folder import recover_exchange, replace_record, staging_folder
 from throughfault.workbook.inputs import Unit, read_unit
 from throughfault.workbook.kernel import ENGINE, kernel_environment
@@ -50,11 +51,13 @@ def review(unit_file: Path, out: Path, template: str | None = None, *, progress:
     Raises
     ------
     InputError
-        If the unit file or template is at fault, or a signed record stands where this one would.
+        If the unit file or template is at fault, its standard is not carried, a signed record stands where this
+        one would, or the record cannot be written.
     RunError
-        If the workbook could not be executed. In both cases nothing is written.
+        If the workbook could not be executed. In every case nothing is written.
     """
     unit = read_unit(unit_file)
+    rules_for(unit)
     chosen = read_template(find_template(template or default_template(unit)))
     name = f"{unit.identity.tag}-{unit.identity.revision}"
     recover_exchange(out / name)
@@ -77,7 +80,7 @@ def _storage(out: Path) -> Iterator[None]:
     try:
         yield
     except OSError as fault:
-        raise RunError(f"{out}: the record could not be written ({fault.strerror}); nothing was changed.") from fault
+        raise RecordError(f"{out}: the record could not be written ({fault.strerror}); nothing was changed.") from fault
 
 
 def fill_record(
