@@ -8,7 +8,13 @@ from pathlib import Path
 
 import pytest
 from cryptography.hazmat.primitives.asymmetric.ed25519 import Ed25519PrivateKey
-from cryptography.hazmat.primitives.serialization import Encoding, NoEncryption, PrivateFormat, PublicFormat
+from cryptography.hazmat.primitives.serialization import (
+    BestAvailableEncryption,
+    Encoding,
+    NoEncryption,
+    PrivateFormat,
+    PublicFormat,
+)
 
 from throughfault import __version__
 from throughfault.cli import main as entry_point
@@ -47,7 +53,10 @@ def test_version_and_help(call):
     assert code == 0
     for name in commands.commands:
         assert name in out
-        assert f"Example: throughfault {name}" in call(name, "--help")[1]
+        text = call(name, "--help")[1]
+        assert f"\n  Example: throughfault {name}" in text
+        assert "\\" not in out + text
+        assert "\b" not in out + text
 
 
 def test_entry_point_leaves_with_the_code():
@@ -236,7 +245,7 @@ def test_what_no_review_could_use_is_refused(call, tmp_path, old, new, sentence)
     for arguments in (("check", path), ("review", path, "--out", tmp_path / "records")):
         code, _, err = call(*arguments)
         assert code == 2
-        assert err.startswith("throughfault: unit.toml: [line ")
+        assert err.startswith(f"throughfault: {path}: [line ")
         assert err.endswith(f"] {sentence}\n")
 
 
@@ -292,19 +301,138 @@ def test_wrong_calls_leave_with_2(call, arguments):
 
 def test_interruption_and_faults_of_the_kit(call, monkeypatch):
     """Ctrl-C leaves with 130, an unforeseen fault with 70 and its whole story."""
-    from throughfault.workbook import inputs
+    from throughfault.workbook import outlook as module
 
     def interrupted(_):
         raise KeyboardInterrupt
 
-    monkeypatch.setattr(inputs, "read_unit", interrupted)
+    monkeypatch.setattr(module, "read_unit", interrupted)
     code, _, err = call("check", T1)
     assert (code, err.strip()) == (130, "throughfault: interrupted; nothing was written.")
 
     def broken(_):
         raise ZeroDivisionError
 
-    monkeypatch.setattr(inputs, "read_unit", broken)
+    monkeypatch.setattr(module, "read_unit", broken)
     code, _, err = call("check", T1)
     assert code == 70
     assert err.endswith("throughfault: this is a fault of the kit; nothing was written.\n")
+
+
+@pytest.mark.parametrize("named", ["IEC 60076-5:1976", "IEEE C57.12.00-1999"])
+def test_an_edition_that_is_not_carried_is_refused(call, tmp_path, record, named):
+    """Check, review and reproduce name the editions there are, before anything is run."""
+    text = Path(T1).read_text(encoding="utf-8").replace("IEC 60076-5:2006", named, 1)
+    path = tmp_path / "unit.toml"
+    path.write_text(text, encoding="utf-8")
+    (record / "inputs" / "unit.toml").write_text(text, encoding="utf-8")
+    sentence = (
+        'throughfault: standard: must be one of "IEC 60076-5", "IEC 60076-5:2006", "IEEE C57.12.00", '
+        f'"IEEE C57.12.00-2015", got {named!r} (did you mean '
+    )
+    for arguments in (("check", path), ("review", path, "--out", tmp_path / "new"), ("reproduce", record)):
+        code, out, err = call(*arguments)
+        assert (code, out) == (2, "")
+        assert err.startswith(sentence)
+        assert err.count("\n") == 1
+    assert not (tmp_path / "new").exists()
+
+
+def check_of(call, tmp_path, *edits):
+    text = Path(T1).read_text(encoding="utf-8")
+    for old, new in edits:
+        assert old in text, old
+        text = text.replace(old, new, 1)
+    path = tmp_path / "unit.toml"
+    path.write_text(text, encoding="utf-8")
+    code, out, err = call("check", path)
+    assert (code, err) == (0, "")
+    return out.removesuffix("\n").split("\n"), path
+
+
+def test_check_warns_of_what_only_the_standard_knows(call, tmp_path):
+    """An impedance below the standard's minimum is an open point, and one is counted as one."""
+    lower = [(f'impedance = "1{digits} %"', f'impedance = "{digits} %"') for digits in ("2.9", "2.5", "2.2")]
+    lines, path = check_of(call, tmp_path, *lower)
+    assert [line for line in lines if line.startswith("open point: ")] == [
+        "open point: The impedance of HV-LV, 2.5 %, is below the standard's minimum, 10 %."
+    ]
+    assert lines[-1] == f"{path}: valid; 1 open point, 1 result not assessed, by IEC 60076-5:2006."
+
+
+def test_check_names_what_cannot_be_assessed(call, tmp_path):
+    """Each result that a review could not give is named with its reason and the keys that would supply it."""
+    lines, path = check_of(call, tmp_path, ('conductor_section = "62 mm^2"\n', ""))
+    assert (
+        "not assessed: thermal.HV.temperature: the temperature cannot be worked out without these inputs; "
+        "needs windings.HV.conductor_section"
+    ) in lines
+    assert lines[-1] == f"{path}: valid; 0 open points, 2 results not assessed, by IEC 60076-5:2006."
+    assert "default used: rating.bank = false" in lines
+
+
+def test_check_counts_in_the_singular(call):
+    """One result is one result."""
+    code, out, _ = call("check", T1)
+    assert code == 0
+    assert out.endswith(f"{T1}: valid; 0 open points, 1 result not assessed, by IEC 60076-5:2006.\n")
+
+
+def test_check_writes_nothing(call, tmp_path, monkeypatch):
+    """Looking at a file leaves no trace."""
+    monkeypatch.chdir(tmp_path)
+    assert call("check", T1)[0] == 0
+    assert list(tmp_path.iterdir()) == []
+
+
+@pytest.mark.parametrize("template", ["nope", "."])
+def test_a_template_that_cannot_be_read_is_bad_input(call, record, template):
+    """Reproducing with a template that is not there, or is a folder, ends in a sentence."""
+    code, out, err = call("reproduce", record, "--template", template)
+    assert (code, out) == (2, "")
+    assert err.startswith(f"throughfault: --template: must be the path of a .ipynb file, got '{template}', which ")
+    assert err.count("\n") == 1
+
+
+def test_an_encrypted_key_needs_a_terminal(record, tmp_path):
+    """Without a terminal nobody is asked for the passphrase, and the record stays unsigned."""
+    path = tmp_path / "id_ed25519"
+    lock = BestAvailableEncryption(b"secret words")
+    path.write_bytes(Ed25519PrivateKey.generate().private_bytes(Encoding.PEM, PrivateFormat.OpenSSH, lock))
+    command = [sys.executable, "-c", "from throughfault.cli import main; main()", "sign", str(record)]
+    command += ["--role", "author", "--key", str(path), "--signer", "mara@bwv.example"]
+    done = subprocess.run(
+        command, stdin=subprocess.DEVNULL, capture_output=True, text=True, start_new_session=True, check=False
+    )
+    assert (done.returncode, done.stdout, done.stderr) == (
+        2, "", "throughfault: sign: the key needs a passphrase and there is no terminal to ask at.\n",
+    )  # fmt: skip
+    assert not (record / "signatures").exists()
+
+
+def test_a_folder_as_a_key_is_named_as_given(call, record):
+    """The path of a key that cannot be read is told as it was given."""
+    code, _, err = call("sign", record, "--role", "author", "--key", ".", "--signer", "x")
+    assert (code, err) == (2, "throughfault: key .: cannot be read: Is a directory\n")
+
+
+@pytest.mark.parametrize("decision", ["reject", "conditional"])
+def test_verify_states_a_decision_against(call, record, key, decision):
+    """A decision that is no plain acceptance is stated in a sentence of its own; the record is intact all the same."""
+    private, signers = key
+    sign = ("sign", record, "--role", "author", "--key", private, "--signer", "mara@bwv.example")
+    assert call(*sign, "--decision", decision)[0] == 0
+    code, out, _ = call("verify", record, "--signers", signers)
+    assert code == 0
+    assert f"The latest decision of the author, by mara@bwv.example, is {decision}." in out.split("\n")
+    assert call(*sign)[0] == 0
+    assert "latest decision" not in call("verify", record, "--signers", signers)[1]
+
+
+def test_assembling_nothing_is_refused(call, tmp_path, monkeypatch):
+    """An empty list of cells, and the name of the kit's own template, write nothing."""
+    monkeypatch.chdir(tmp_path)
+    assert call("assemble", "--cells", "", "x")[0] == 2
+    assert call("assemble", "--cells", " , ", "x")[0] == 2
+    assert call("assemble", "--cells", "duty", "rating")[0] == 2
+    assert list(tmp_path.iterdir()) == []

@@ -3,6 +3,7 @@
 import json
 import os
 import re
+import signal
 import subprocess
 import sys
 from pathlib import Path
@@ -200,19 +201,30 @@ def test_a_full_disk_leaves_the_old_record(record, monkeypatch, name):
     monkeypatch.setattr(Path, "open", full)
     monkeypatch.setattr(Path, "write_bytes", full_bytes)
     monkeypatch.setattr(nbformat, "write", lambda nb, path: Path(path).write_bytes(nbformat.writes(nb).encode()))
-    with pytest.raises((RunError, RecordError), match="No space left on device"):
+    with pytest.raises(RecordError) as fault:
         review(T1, record.parent)
+    assert str(fault.value) == (
+        f"{record.parent}: the record could not be written (No space left on device); nothing was changed."
+    )
+    assert fault.value.exit_code == 2
     assert {p.name: p.read_bytes() for p in record.iterdir() if p.is_file()} == before
     assert [p.name for p in record.parent.iterdir()] == [record.name]
 
 
 KILLED = """
-import os, signal, sys, threading, time
+import os, signal, sys, threading
 from pathlib import Path
+from papermill.engines import NotebookExecutionManager as Manager
 from throughfault.cli.main import run
+begun = threading.Event()
+start = Manager.cell_start
+def started(self, cell, cell_index=None, **more):
+    if cell_index == 3:
+        begun.set()
+    return start(self, cell, cell_index, **more)
+Manager.cell_start = started
 def strike():
-    deadline = time.monotonic() + 60
-    while time.monotonic() < deadline:
+    if begun.wait(60):
         for entry in Path("/proc").glob("[0-9]*/cmdline"):
             try:
                 line = entry.read_bytes()
@@ -220,10 +232,8 @@ def strike():
             except OSError:
                 continue
             if b"ipykernel_launcher" in line and parent == str(os.getpid()):
-                time.sleep(0.7)
                 {action}
                 return
-        time.sleep(0.01)
 threading.Thread(target=strike, daemon=True).start()
 sys.exit(run(["review", sys.argv[1], "--out", sys.argv[2]]))
 """
@@ -239,11 +249,18 @@ sys.exit(run(["review", sys.argv[1], "--out", sys.argv[2]]))
             "throughfault: rating: the kernel died while the workbook ran; nothing was written.",
         ),
         ("os.kill(os.getpid(), signal.SIGINT)", 130, "throughfault: interrupted; nothing was written."),
+        ("os.kill(os.getpid(), signal.SIGTERM)", 130, "throughfault: interrupted; nothing was written."),
+        ("os.kill(os.getpid(), signal.SIGHUP)", 130, "throughfault: interrupted; nothing was written."),
+        (
+            "os.kill(os.getpid(), signal.SIGHUP); os.kill(os.getpid(), signal.SIGTERM)",
+            130,
+            "throughfault: interrupted; nothing was written.",
+        ),
     ],
-    ids=["kernel killed", "interrupted"],
+    ids=["kernel killed", "interrupted", "terminated", "hung up", "hung up and terminated"],
 )
 def test_a_run_cut_short_leaves_the_old_record(record, action, code, message):
-    """A killed kernel or Ctrl-C leaves the old record, no half one, no kernel, and says so."""
+    """A killed kernel, Ctrl-C or the end of the session leaves the old record, no half one, and says so."""
     before = {p.name: p.read_bytes() for p in record.iterdir() if p.is_file()}
     script = KILLED.replace("{action}", action)
     done = subprocess.run(
@@ -258,6 +275,18 @@ def test_a_run_cut_short_leaves_the_old_record(record, action, code, message):
     assert "Traceback" not in done.stderr
     assert {p.name: p.read_bytes() for p in record.iterdir() if p.is_file()} == before
     assert [p.name for p in record.parent.iterdir()] == [record.name]
+
+
+@pytest.mark.skipif(not hasattr(signal, "SIGHUP"), reason="has no SIGHUP")
+def test_what_the_caller_ignores_stays_ignored():
+    """Started so that hanging up is ignored, the command line goes on through it."""
+    script = (
+        "import os, signal, sys; signal.signal(signal.SIGHUP, signal.SIG_IGN)\n"
+        "from throughfault.cli import main as m\nfrom throughfault.cli.main import commands, run\n"
+        "commands.commands['schema'].callback = lambda: os.kill(os.getpid(), signal.SIGHUP)\n"
+        "sys.exit(run(['schema']))"
+    )
+    assert subprocess.run([sys.executable, "-c", script], check=False, timeout=60).returncode == 0
 
 
 def test_a_page_that_would_load_something_is_no_record(tmp_path, monkeypatch):

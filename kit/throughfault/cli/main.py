@@ -2,9 +2,12 @@
 
 from __future__ import annotations
 
+import signal
 import sys
+import threading
 import traceback
-from collections.abc import Sequence
+from collections.abc import Iterator, Sequence
+from contextlib import contextmanager, suppress
 
 import click
 
@@ -42,7 +45,37 @@ def main(arguments: Sequence[str] | None = None) -> None:
 
 
 def run(arguments: Sequence[str] | None = None) -> int:
-    """Run the command line and return its exit code."""
+    """Run the command line and return its exit code; a polite end of the process is treated like Ctrl-C."""
+    with _ended_as_interrupted():
+        return _run(arguments)
+
+
+@contextmanager
+def _ended_as_interrupted() -> Iterator[None]:
+    """Let SIGTERM and SIGHUP unwind what is being done; a signal that the caller ignores stays ignored."""
+    if threading.current_thread() is not threading.main_thread():
+        yield
+        return
+    names = [name for name in ("SIGTERM", "SIGHUP") if hasattr(signal, name)]
+    taken = [s for s in (signal.Signals[name] for name in names) if signal.getsignal(s) == signal.SIG_DFL]
+
+    came: list[int] = []
+
+    def interrupt(number: int, _: object) -> None:
+        came.append(number)
+        if len(came) == 1:  # a second one must not cut the clearing away short
+            raise KeyboardInterrupt
+
+    for one in taken:
+        signal.signal(one, interrupt)
+    try:
+        yield
+    finally:
+        for one in taken:
+            signal.signal(one, signal.SIG_DFL)
+
+
+def _run(arguments: Sequence[str] | None) -> int:
     try:
         answer = commands.main(args=list(arguments) if arguments is not None else None, standalone_mode=False)
     except click.exceptions.Abort:
@@ -64,5 +97,6 @@ def run(arguments: Sequence[str] | None = None) -> int:
 
 
 def _interrupted() -> int:
-    click.echo("throughfault: interrupted; nothing was written.", err=True)
+    with suppress(OSError):  # the terminal may be gone
+        click.echo("throughfault: interrupted; nothing was written.", err=True)
     return EXIT_INTERRUPTED

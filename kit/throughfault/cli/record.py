@@ -2,7 +2,9 @@
 
 from __future__ import annotations
 
+import os
 import sys
+from contextlib import suppress
 from pathlib import Path
 
 import click
@@ -14,7 +16,20 @@ ROLES = ("author", "checker", "approver", "witness")
 DECISIONS = ("accept", "reject", "conditional")
 
 
+def _terminal() -> bool:
+    """Tell whether a passphrase can be asked for unseen: at the controlling terminal, else at standard input."""
+    if hasattr(os, "ctermid"):
+        with suppress(OSError):
+            os.close(os.open(os.ctermid(), os.O_RDWR | os.O_NOCTTY))
+            return True
+    return sys.stdin is not None and sys.stdin.isatty()
+
+
 def _ask() -> bytes:
+    from throughfault.errors import InputError
+
+    if not _terminal():
+        raise InputError("sign: the key needs a passphrase and there is no terminal to ask at.")
     return str(click.prompt("Passphrase of the key", hide_input=True, err=True)).encode()
 
 
@@ -26,7 +41,7 @@ def _ask() -> bytes:
 @click.option("--decision", type=click.Choice(DECISIONS), default="accept", show_default=True)
 @click.option("--comment", metavar="TEXT", default="")
 def sign(record: Path, role: str, key: Path, signer: str, decision: str, comment: str) -> None:
-    r"""Sign a record in a role.
+    """Sign a record in a role.
 
     What is signed names the record's manifest, the role, the decision and all earlier signatures.
 
@@ -46,7 +61,7 @@ def sign(record: Path, role: str, key: Path, signer: str, decision: str, comment
 @click.option("--signers", metavar="FILE", type=click.Path(path_type=Path), help="Your own allowed_signers file.")
 @click.option("--require", metavar="ROLE,...", default="", help="Roles that must have signed.")
 def verify(record: Path, signers: Path | None, require: str) -> int:
-    r"""Check every hash and signature of a record; nothing in it is run.
+    """Check every hash and signature of a record; nothing in it is run.
 
     \b
     Example: throughfault verify records/BV-T1-A --signers allowed_signers --require author,checker
@@ -65,7 +80,7 @@ def verify(record: Path, signers: Path | None, require: str) -> int:
 @RECORD
 @click.option("--template", metavar="PATH", type=click.Path(path_type=Path), help="Template not shipped with the kit.")
 def reproduce(record: Path, template: Path | None) -> int:
-    r"""Run a record's inputs again with the installed kit and compare number by number.
+    """Run a record's inputs again with the installed kit and compare number by number.
 
     \b
     Example: throughfault reproduce records/BV-T1-A

@@ -15,19 +15,19 @@ UNIT = click.argument("unit", metavar="UNIT.toml", type=click.Path(path_type=Pat
 @click.command()
 @UNIT
 def check(unit: Path) -> None:
-    r"""Validate a unit file and print every fault found.
+    """Validate a unit file and print every fault found.
+
+    Of a valid file: what is open or unusual, the defaults a review would use, and what it could not assess.
 
     \b
     Example: throughfault check example_reviews/BV-T1/unit.toml
     """
-    from throughfault.workbook.inputs import read_unit
+    from throughfault.workbook.outlook import outlook
 
-    read = read_unit(unit)
-    for warning in read.warnings:
-        click.echo(f"open point: {warning.text}")
-    for default in read.defaults:
-        click.echo(f"default used: {default.path} = {default.value}")
-    click.echo(f"{unit}: valid; {len(read.warnings)} open points.")
+    found = outlook(unit)
+    for line in found.lines:
+        click.echo(line)
+    click.echo(f"{unit}: valid; {found.summary}.")
 
 
 @click.command()
@@ -36,7 +36,7 @@ def check(unit: Path) -> None:
 @click.option("--out", metavar="DIR", type=click.Path(path_type=Path), default=Path("records"), show_default=True)
 @click.option("--strict", is_flag=True, help="Exit 1 unless the overall verdict is 'withstands'.")
 def review(unit: Path, template: str | None, out: Path, *, strict: bool) -> int:
-    r"""Run the workbook on a unit file and write its record.
+    """Run the workbook on a unit file and write its record.
 
     The record is DIR/<tag>-<revision>. An unsigned one is replaced once the new one is whole; a
     signed one is refused.

@@ -207,7 +207,12 @@ def _negatives(wanted: Sequence[str], signatures: Sequence[SignatureCheck]) -> t
 
 def _notes(integrity: Integrity, signatures: Sequence[SignatureCheck]) -> tuple[str, ...]:
     """State what a reader should know although it makes no signature false."""
-    notes: list[str] = []
+    latest = {signature.role: signature for signature in signatures}
+    notes = [
+        f"The latest decision of the {role}, by {signature.signer}, is {signature.decision}."
+        for role, signature in latest.items()
+        if signature.decision != "accept"
+    ]
     roles_of_key: dict[str, set[str]] = {}
     for signature in signatures:
         roles_of_key.setdefault(signature.key, set()).add(signature.role)
