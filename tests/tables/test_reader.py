@@ -87,3 +87,12 @@ def test_digests_are_those_of_the_files():
     assert tuple(name.removesuffix(".csv") for name in digests) == table_names()
     name, digest = next(iter(digests.items()))
     assert hashlib.sha256(files("throughfault.tables").joinpath(name).read_bytes()).hexdigest() == digest
+
+
+def test_digests_are_those_of_the_tables_alone(tmp_path, monkeypatch):
+    """Every table is hashed under its file name, and nothing that is no table."""
+    (tmp_path / "a.csv").write_bytes(b"abc")
+    (tmp_path / "__init__.py").write_bytes(b"")
+    monkeypatch.setattr("throughfault.tables.files", lambda package: tmp_path)
+    # SHA-256 of "abc": FIPS 180-4, example published by NIST
+    assert table_digests() == {"a.csv": "ba7816bf8f01cfea414140de5dae2223b00361a396177a9cb410ff61f20015ad"}

@@ -15,7 +15,6 @@ from throughfault.workbook.manifest import (
     parse_sums,
     path_faults,
     sums_text,
-    table_hashes,
     timestamp,
     write_manifest,
 )
@@ -78,17 +77,6 @@ def test_missing_dependency_is_called_absent(bench, monkeypatch):
     monkeypatch.setattr("throughfault.workbook.manifest.DEPENDENCIES", ("no-such-distribution-here",))
     manifest = json.loads((bench.record() / "manifest.json").read_bytes())
     assert manifest["dependencies"] == {"no-such-distribution-here": "absent"}
-
-
-def test_table_hashes_are_those_of_the_installed_kit(tmp_path, monkeypatch):
-    """Every table of the kit is hashed under its file name, and nothing that is no table."""
-    tables = tmp_path / "tables"
-    tables.mkdir()
-    (tables / "a.csv").write_bytes(b"abc")
-    (tables / "__init__.py").write_bytes(b"")
-    monkeypatch.setattr("throughfault.workbook.manifest.files", lambda package: tmp_path)
-    # SHA-256 of "abc": FIPS 180-4, example published by NIST
-    assert table_hashes() == {"a.csv": "ba7816bf8f01cfea414140de5dae2223b00361a396177a9cb410ff61f20015ad"}
 
 
 @needs_sha256sum

@@ -11,12 +11,12 @@ import re
 from collections.abc import Iterable, Mapping
 from datetime import UTC, datetime
 from importlib.metadata import PackageNotFoundError, version
-from importlib.resources import files
 from pathlib import Path
 
 import rfc8785
 
 from throughfault.errors import RecordError
+from throughfault.tables import table_digests
 from throughfault.workbook.documents import (
     MANIFEST,
     REQUIRED,
@@ -34,7 +34,6 @@ __all__ = [
     "parse_sums",
     "path_faults",
     "sums_text",
-    "table_hashes",
     "timestamp",
     "write_manifest",
 ]
@@ -91,7 +90,7 @@ def write_manifest(record: Path, *, tables: Mapping[str, str] | None = None, cre
         "kit": {"name": "throughfault", "version": results.kit.version},
         **_environment(),
         "template": results.template.model_dump(),
-        "tables": dict(table_hashes() if tables is None else tables),
+        "tables": dict(table_digests() if tables is None else tables),
         "inputs_sha256": results.inputs_sha256,
     }
     data = rfc8785.dumps(document)  # type: ignore[arg-type]  # the alias for JSON values is not covariant
@@ -129,12 +128,6 @@ def hash_of_inputs(hashes: Mapping[str, str]) -> str:
     """Return the joint hash of those of the files below inputs/, of all files of a record by path."""
     lines = sorted(f"{value}  {name}\n" for name, value in hashes.items() if name.startswith("inputs/"))
     return sha256_bytes("".join(lines).encode())
-
-
-def table_hashes() -> dict[str, str]:
-    """Return the SHA-256 of every table of the installed kit by file name."""
-    tables = files("throughfault").joinpath("tables").iterdir()
-    return {table.name: sha256_bytes(table.read_bytes()) for table in tables if table.name.endswith(".csv")}
 
 
 def timestamp(moment: datetime | None = None) -> str:
