@@ -51,7 +51,6 @@ CASES = {
             ("[design.core]", "[[x]]"),
         ],
         [
-            "unit.toml: design.core: is missing; it must be a table; source: maker's design sheet.",
             "unit.toml: x: is not a known key; known here: format, standard, identity, rating, windings, impedances, system, earthing, zero_sequence, tap_changer, bushings, neutral, design, limits, declared.",
             "unit.toml: design.coils: must have turns that follow the voltages within 10 %, got 'HV' over 'LV' +303 % off at tapping 'principal'.",
             "unit.toml: [line 38] windings.LV.rated_voltage: must not be above that of the first winding, 132 kV of 'HV', got 133 kV (IEC 60076-1: high voltage first).",

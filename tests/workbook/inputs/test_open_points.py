@@ -18,7 +18,7 @@ def edited(text, *edits):
 
 def rounded(text):
     """Return the text with long numbers in five digits."""
-    return re.sub(r"\d+\.\d{4,}", lambda number: f"{float(number[0]):.5g}", text)
+    return re.sub(r"\d+\.\d{3,}", lambda number: f"{float(number[0]):.5g}", text)
 
 
 POINTS = {

@@ -4,6 +4,7 @@ import dataclasses
 
 import pytest
 
+from throughfault.errors import UnitFileError
 from throughfault.quantities import Quantity
 from throughfault.workbook.inputs import (
     ProofStressShare,
@@ -430,3 +431,30 @@ def test_a_twin_lies_two_high(change):
     coil = made.design.coils[0]
     assert radial_fill(coil) == pytest.approx(10 * (2 * 2.6 + 0.4) / 60)
     assert turn_section(coil) == pytest.approx(2 * 2 * 2.6 * 13)
+
+
+@pytest.mark.parametrize("missing", ["core", "coils", "clamping", "all"])
+def test_a_design_may_be_known_in_part(whole, missing):
+    """Whatever part of a design is missing, the file is read and the other parts are kept."""
+    head, core = whole.split("[design.core]")
+    core, coils = core.split("[[design.coils]]", 1)
+    coils, clamping = coils.split("[design.clamping]")
+    clamping = clamping.split("[limits]")[0]
+    parts = {
+        "core": f"[design.core]{core}",
+        "coils": f"[[design.coils]]{coils}",
+        "clamping": f"[design.clamping]{clamping}",
+    }
+    kept = "[design]\n" if missing == "all" else "".join(text for name, text in parts.items() if name != missing)
+    design = read_unit_text(head + kept).design
+    found = {"core": design.core, "coils": design.coils or None, "clamping": design.clamping}
+    absent = {"core", "coils", "clamping"} if missing == "all" else {missing}
+    assert {name for name, part in found.items() if part is None} == absent
+
+
+def test_what_a_missing_core_does_not_hide(whole):
+    """Coils are still held against each other and against the voltages."""
+    start, end = whole.index("[design.core]"), whole.index("[[design.coils]]")
+    text = (whole[:start] + whole[end:]).replace('inner_radius = "310 mm"', 'inner_radius = "380 mm"', 1)
+    with pytest.raises(UnitFileError, match=r"outer_radius: must be above inner_radius, 380 mm, got 370 mm\.$"):
+        read_unit_text(text)

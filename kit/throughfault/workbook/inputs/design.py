@@ -140,8 +140,8 @@ class Clamping(Section):
 
 
 class Design(Section):
-    """The mechanical design."""
+    """The mechanical design, as far as it is known; what needs a part that is missing is left out."""
 
-    core: Core = key("Core.", DESIGN)
-    coils: tuple[Coil, ...] = key("Physical coils, innermost first.", DESIGN, at_least=1, at_most=MOST_COILS)
+    core: Core | None = key("Core.", DESIGN, default=None)
+    coils: tuple[Coil, ...] = key("Physical coils, innermost first.", DESIGN, default=(), at_most=MOST_COILS)
     clamping: Clamping | None = key("Clamping structure.", DESIGN, default=None)
