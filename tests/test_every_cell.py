@@ -5,9 +5,11 @@ import math
 import random
 import re
 import tomllib
+import types
 from pathlib import Path
 
 import numpy as np
+import pint
 import pytest
 
 import throughfault.cells  # noqa: F401 - fills the registry
@@ -92,6 +94,53 @@ def test_result_does_not_depend_on_units(cell):
             given = quantities(cell, values)
             given[name] = Quantity(convert(values[name], symbol.unit, unit), unit)
             assert cell.step("b", **given).result.value == pytest.approx(expected, rel=1e-9, abs=1e-9)
+
+
+LIBRARY_OF_UNITS = pint.UnitRegistry(autoconvert_offset_to_baseunit=True)
+#: a system of units in which no base unit is that of another: metre, kilogram, second, ampere and kelvin over these
+STRANGE = {"[length]": 3.1, "[mass]": 0.57, "[time]": 7.3, "[current]": 1.9, "[temperature]": 0.83}
+
+
+def in_strange_units(value, unit):
+    """Write a value in a coherent system of units that nobody uses, temperatures from absolute zero."""
+    base = LIBRARY_OF_UNITS.Quantity(value, UNITS[unit][1]).to_base_units()
+    size = math.prod(STRANGE[name] ** power for name, power in base.dimensionality.items())
+    return base.to(LIBRARY_OF_UNITS.Quantity(1, UNITS[unit][1]).to_base_units().units).magnitude * size * si(base)
+
+
+def si(base):
+    """Factor from the library's base units (gram) to those of the SI; it scales masses only."""
+    return 0.001 ** base.dimensionality.get("[mass]", 0)
+
+
+@pytest.mark.parametrize("cell", FORMULAS, ids=ids(FORMULAS))
+def test_units_are_printed_where_the_formula_is_true_of_quantities(cell):
+    """A formula of quantities gives the same quantity in every coherent system of units; one of numbers does not."""
+    rng = seeded(cell)
+    for _ in range(5):
+        values = sample(cell, rng)
+        strange = {name: in_strange_units(value, cell.arguments[name].unit) for name, value in values.items()}
+        expected = in_strange_units(cell(**values), cell.result.unit)
+        try:
+            held = cell.function(**strange) == pytest.approx(expected, rel=1e-9)
+        except (ArithmeticError, ValueError):
+            held = False
+        assert cell.holds_as_quantities is held
+
+
+@pytest.mark.parametrize("cell", [c for c in FORMULAS if c.holds_as_quantities], ids=lambda cell: cell.name)
+def test_a_line_printed_with_units_is_an_equation_of_quantities(cell):
+    """The function itself, given quantities of a units library, gives the result in its unit."""
+
+    def root_of_squares(*parts):
+        return sum((part**2 for part in parts[1:]), parts[0] ** 2) ** 0.5
+
+    roots = {"sqrt": lambda value: value**0.5, "hypot": root_of_squares}
+    function = types.FunctionType(cell.function.__code__, cell.function.__globals__ | roots)
+    values = sample(cell, seeded(cell))
+    given = {n: LIBRARY_OF_UNITS.Quantity(v, UNITS[cell.arguments[n].unit][1]) for n, v in values.items()}
+    got = LIBRARY_OF_UNITS.Quantity(1.0) * function(**given) if cell.result.unit != "degC" else function(**given)
+    assert got.to(UNITS[cell.result.unit][1]).magnitude == pytest.approx(cell(**values), rel=1e-9)
 
 
 @pytest.mark.parametrize(("cell", "validity"), LIMITS, ids=ids(LIMITS))

@@ -17,7 +17,7 @@ import pint
 
 from throughfault.errors import DeclarationError, QuantityError, did_you_mean
 
-__all__ = ["KINDS", "UNITS", "Quantity", "convert", "expectation", "parse", "parse_impedance", "shown"]
+__all__ = ["KINDS", "UNITS", "Quantity", "as_pint", "convert", "expectation", "parse", "parse_impedance", "shown"]
 
 LONGEST_TEXT = 64
 
@@ -143,6 +143,15 @@ def _scale(source: str, target: str) -> tuple[float, float]:
     one = _registry.Quantity(1.0, UNITS[source][1]).to(UNITS[target][1]).magnitude
     zero = _registry.Quantity(0.0, UNITS[source][1]).to(UNITS[target][1]).magnitude
     return float(one - zero), float(zero)
+
+
+def as_pint(value: float, unit: str) -> pint.Quantity[float]:
+    """Return a number with its unit as a quantity of the units library, which calculates with units.
+
+    A temperature has an offset unit there: added to a plain number it is refused, in a product it counts from
+    absolute zero.
+    """
+    return _registry.Quantity(value, UNITS[unit][1])
 
 
 def convert(value: float, source: str, target: str) -> float:

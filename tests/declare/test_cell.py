@@ -8,7 +8,7 @@ import pytest
 from throughfault import nomenclature as nom
 from throughfault.declare import Condition, Outcome, Range, Symbol, algorithm, cell, registry
 from throughfault.declare import cell as declare_cell
-from throughfault.declare.cell import _registry
+from throughfault.declare.registry import _registry
 from throughfault.errors import DeclarationError, InputError, OutsideValidity
 from throughfault.quantities import Quantity
 from throughfault.sources import Source
@@ -109,6 +109,31 @@ def test_outside_its_range_a_formula_says_so(duration, message):
     with pytest.raises(OutsideValidity) as fault:
         made.step("id", current_density=Quantity(90.0, "A/mm^2"), duration=Quantity(duration, "s"))
     assert str(fault.value) == message
+
+
+def steep(x_over_r: Ratio, duration: Duration) -> Factor:
+    """Just an example."""
+    return exp(x_over_r) / duration + sqrt(x_over_r)
+
+
+def overflowing(x_over_r: Ratio, duration: Duration) -> Factor:
+    """Just an example."""
+    return x_over_r * x_over_r * duration
+
+
+@pytest.mark.parametrize(
+    ("function", "x_over_r", "duration"),
+    [(steep, 1000.0, 1.0), (steep, 1.0, 0.0), (steep, -1.0, 1.0), (overflowing, 1e200, 1.0)],
+)
+def test_numbers_a_formula_cannot_take_are_refused(function, x_over_r, duration):
+    """Overflow, division by zero and roots of negative numbers are outside the validity, said in one sentence."""
+    given = {"x_over_r": Quantity(x_over_r, "1"), "duration": Quantity(duration, "s")}
+    with pytest.raises(OutsideValidity) as fault:
+        declare(function).step("id", **given)
+    assert str(fault.value) == (
+        f"{function.__name__}: the numbers given lie outside what the formula can take (CommonPractice, example), "
+        f"got 'x_over_r' {given['x_over_r']}, 'duration' {given['duration']}."
+    )
 
 
 @pytest.mark.parametrize(

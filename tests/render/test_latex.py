@@ -11,7 +11,7 @@ from tests.render.samples import AVERAGE, FACTOR, SAMPLES
 import throughfault.cells  # noqa: F401 - declares the library
 from throughfault.declare import Cell, Range, registry
 from throughfault.quantities import Quantity
-from throughfault.render.latex import formula_lines, worked_lines
+from throughfault.render.latex import formula_lines, worked_lines, worked_units
 from throughfault.render.mathml import mathml
 
 LIBRARY = {name: cell for name, cell in registry().items() if isinstance(cell, Cell)}
@@ -114,8 +114,8 @@ def test_the_page_of_the_closed_form():
     ]
 
 
-def test_worked_line_carries_units():
-    """Numbers of the run stand with their units, a unit under a power in brackets."""
+def test_numbers_stand_alone_where_the_formula_is_one_of_numbers():
+    """A constant for numbers of degC allows no units in the line; they are told beside it, the result keeps its own."""
     step = AVERAGE.step(
         "s",
         initial_temperature=Quantity(105, "degC"),
@@ -124,10 +124,36 @@ def test_worked_line_carries_units():
     )
     assert worked_lines(step) == [
         (
-            r"\theta_1 = 105\,\mathrm{°C} + \frac{2 \cdot \left(105\,\mathrm{°C} + 235\right)}"
-            r"{\frac{106000}{\left(80\,\mathrm{A/mm^{2}}\right)^{2} \cdot 2\,\mathrm{s}} - 1} = 198.39\,\mathrm{°C}"
+            r"\theta_1 = 105 + \frac{2 \cdot \left(105 + 235\right)}"
+            r"{\frac{106000}{80^{2} \cdot 2} - 1} = 198.39\,\mathrm{°C}"
         )
     ]
+    assert worked_units(step) == [("degC", "A/mm^2", "s")]
+
+
+def test_worked_line_carries_units_where_it_is_true_of_quantities():
+    """Numbers of the run stand with their units, a unit under a power in brackets; none is told beside."""
+    step = LIBRARY["system_impedance"].step(
+        "s", system_voltage=Quantity(132, "kV"), short_circuit_power=Quantity(10, "GVA")
+    )
+    assert worked_lines(step) == [
+        r"Z_s = \frac{\left(132\,\mathrm{kV}\right)^{2}}{10000\,\mathrm{MVA}} = 1.7424\,\Omega".replace(
+            r"\Omega", r"\mathrm{\Omega }"
+        )
+    ]
+    assert worked_units(step) == [()]
+
+
+def test_units_are_told_line_by_line():
+    """Each line names the units of its own numbers, pure numbers and constants none."""
+    cell = LIBRARY["permitted_heating_ratio_series"]
+    given = {"start_temperature": 100.0, "temperature_offset": 225.0, "permitted_temperature": 200.0}
+    step = cell.step(
+        "s",
+        start_eddy_share=Quantity(0.1, "1"),
+        **{name: Quantity(value, cell.arguments[name].unit) for name, value in given.items()},
+    )
+    assert worked_units(step) == [("degC", "K"), ()]
 
 
 def test_choice_prints_as_cases_and_works_with_the_branch_that_applied():

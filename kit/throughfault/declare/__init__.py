@@ -1,6 +1,7 @@
 """How a calculation is declared once: symbols, ranges, cells, steps, limits and findings."""
 
-from throughfault.declare.cell import Algorithm, Cell, Equation, Step, algorithm, cell, registry
+from throughfault.declare.algorithm import Algorithm, Equation, algorithm
+from throughfault.declare.cell import Cell, Step, cell
 from throughfault.declare.finding import (
     ABILITIES,
     Check,
@@ -12,6 +13,7 @@ from throughfault.declare.finding import (
     overall_verdict,
     verdict_of,
 )
+from throughfault.declare.registry import registry
 from throughfault.declare.symbol import Symbol
 from throughfault.declare.validity import Condition, Range
 

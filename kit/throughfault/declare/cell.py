@@ -1,4 +1,4 @@
-"""Cells: published formulas and algorithms, declared once.
+"""Cells: published formulas, declared once.
 
 The decorator `cell` wraps a plain function of floats with its symbols, source, range of validity
 and printed formula. Called with floats a cell *is* the function; `Cell.step` takes quantities and
@@ -11,26 +11,22 @@ import inspect
 import math
 from collections.abc import Callable, Mapping
 from dataclasses import dataclass, field
+from functools import cached_property
 from typing import Annotated, Any, Generic, ParamSpec, get_args, get_origin, get_type_hints
 
+from throughfault.declare.dimension import holds_as_quantities
 from throughfault.declare.formula import Formula, Name, Node, read_formula
+from throughfault.declare.registry import register
 from throughfault.declare.symbol import Symbol
 from throughfault.declare.validity import Condition, Range
 from throughfault.errors import DeclarationError, InputError, OutsideValidity, did_you_mean
 from throughfault.quantities import Quantity
 from throughfault.sources import Source
 
-__all__ = ["Algorithm", "Cell", "Equation", "Step", "algorithm", "cell", "registry"]
+__all__ = ["Cell", "Step", "cell"]
 
 P = ParamSpec("P")
 AGREEMENT = 1e-12  # relative; the printed tree and the function do the same operations
-
-_registry: dict[str, Cell[Any] | Algorithm] = {}
-
-
-def registry() -> dict[str, Cell[Any] | Algorithm]:
-    """Return every declared cell by name (import ``throughfault.cells`` to fill it)."""
-    return dict(sorted(_registry.items()))
 
 
 @dataclass(frozen=True, slots=True)
@@ -94,6 +90,12 @@ class Cell(Generic[P]):
         """Be the plain function: floats in the declared units in, a float out."""
         return self.function(*args, **kwargs)
 
+    @cached_property
+    def holds_as_quantities(self) -> bool:
+        """Whether the printed formula is true of quantities, or only of numbers in the units declared."""
+        units = {name: symbol.unit for name, symbol in (self.arguments | self.terms).items()}
+        return holds_as_quantities(self.formula, tuple(self.arguments), units, self.result.unit)
+
     def symbol(self, term: str) -> Symbol:
         """Return the symbol of an argument or intermediate term."""
         return self.arguments[term] if term in self.arguments else self.terms[term]
@@ -130,6 +132,22 @@ class Cell(Generic[P]):
             raise InputError(faults)
         return {name: quantities[name].to(symbol.unit) for name, symbol in self.arguments.items()}
 
+    def _computed(self, values: Mapping[str, float]) -> tuple[float, float, dict[str, float]]:
+        """Return what the function gives, what the printed formula gives, and its terms."""
+        try:
+            result = float(self.function(**values))  # type: ignore[arg-type, call-arg]
+            printed, terms = self.formula.evaluate(values)
+        except (OverflowError, ZeroDivisionError, ValueError) as error:
+            raise self._beyond(values) from error
+        if not math.isfinite(result):
+            raise self._beyond(values)
+        return result, printed, terms
+
+    def _beyond(self, values: Mapping[str, float]) -> OutsideValidity:
+        got = ", ".join(f"'{name}' {Quantity(value, self.arguments[name].unit)}" for name, value in values.items())
+        what = "the numbers given lie outside what the formula can take"
+        return OutsideValidity(f"{self.name}: {what} ({self.source.citation}), got {got}.")
+
     def step(self, id: str, /, **quantities: Quantity) -> Step:  # noqa: A002 - the record's own word
         """Evaluate the cell with quantities.
 
@@ -138,15 +156,14 @@ class Cell(Generic[P]):
         InputError
             If an argument is missing, unknown or of another kind; all faults at once.
         OutsideValidity
-            If the arguments lie outside the range in which the source holds.
+            If the arguments lie outside the range in which the source holds, or outside what the formula can take.
         """
         values = self._values(quantities)
         outside = self.outside(values)
         if outside is not None:
             raise OutsideValidity(outside)
-        result = float(self.function(**values))  # type: ignore[arg-type, call-arg]
-        printed, terms = self.formula.evaluate(values)
-        if not math.isfinite(result) or not math.isclose(result, printed, rel_tol=AGREEMENT, abs_tol=1e-300):
+        result, printed, terms = self._computed(values)
+        if not math.isclose(result, printed, rel_tol=AGREEMENT, abs_tol=1e-300):
             raise DeclarationError(f"{self.name}: the printed formula gives {printed!r}, the function {result!r}.")
         return Step(
             id=id,
@@ -155,49 +172,6 @@ class Cell(Generic[P]):
             terms={name: Quantity(value, self.terms[name].unit) for name, value in terms.items()},
             result=Quantity(result, self.result.unit),
         )
-
-
-@dataclass(frozen=True, slots=True)
-class Equation:
-    """A governing equation of an algorithm, printed by hand and compared numerically.
-
-    Attributes
-    ----------
-    latex
-        As printed.
-    residual
-        Takes what the algorithm was given and what it gave; returns the relative residual.
-    """
-
-    latex: str
-    residual: Callable[..., float]
-
-
-@dataclass(frozen=True)
-class Algorithm:
-    """A cell whose result comes from a solver: shows its governing equations."""
-
-    function: Callable[..., Any]
-    title: str
-    source: Source
-    equations: tuple[Equation, ...]
-    example: Callable[[], dict[str, Any]]
-    valid_for: tuple[str, ...]
-    checks: tuple[str, ...]
-
-    @property
-    def name(self) -> str:
-        """Name of the cell."""
-        return self.function.__name__
-
-    @property
-    def documentation(self) -> str:
-        """What is assumed."""
-        return inspect.getdoc(self.function) or ""
-
-    def __call__(self, *args: Any, **kwargs: Any) -> Any:
-        """Be the plain function."""
-        return self.function(*args, **kwargs)
 
 
 def _symbols(function: Callable[..., object]) -> tuple[dict[str, Symbol], Symbol]:
@@ -222,14 +196,6 @@ def _names(node: Node | object) -> set[str]:
     children = [getattr(node, slot) for slot in getattr(node, "__slots__", ())]
     nested = [item for child in children for item in (child if isinstance(child, tuple) else (child,))]
     return set().union(*(_names(item) for item in nested if hasattr(item, "__slots__")))
-
-
-def _register(made: Cell[Any] | Algorithm) -> None:
-    if made.name in _registry and _registry[made.name].function.__module__ != made.function.__module__:
-        raise DeclarationError(f"{made.name}: declared twice.")
-    if not made.documentation or not made.checks:
-        raise DeclarationError(f"{made.name}: needs a docstring and the checks behind it.")
-    _registry[made.name] = made
 
 
 def cell(
@@ -277,26 +243,7 @@ def cell(
         if unused := set(arguments) - used:
             raise DeclarationError(f"{function.__name__}: the formula does not use {sorted(unused)}.")
         made = Cell(function, title, source, arguments, dict(terms or {}), result, valid_for, checks, formula)
-        _register(made)
-        return made
-
-    return declare
-
-
-def algorithm(
-    *,
-    title: str,
-    source: Source,
-    equations: tuple[Equation, ...],
-    example: Callable[[], dict[str, Any]],
-    valid_for: tuple[str, ...],
-    checks: tuple[str, ...],
-) -> Callable[[Callable[..., Any]], Algorithm]:
-    """Declare an algorithm cell: governing equations, an example to compare them with, its validity in words."""
-
-    def declare(function: Callable[..., Any]) -> Algorithm:
-        made = Algorithm(function, title, source, equations, example, valid_for, checks)
-        _register(made)
+        register(made)
         return made
 
     return declare

@@ -49,8 +49,8 @@ COMPARE: dict[type[ast.cmpop], tuple[str, Callable[[float, float], bool]]] = {
     ast.Gt: (">", operator.gt),
     ast.GtE: (">=", operator.ge),
 }
-_BINARY_FUNCTION = dict(BINARY.values())
-_COMPARE_FUNCTION = dict(COMPARE.values())
+BINARY_FUNCTION = dict(BINARY.values())
+COMPARE_FUNCTION = dict(COMPARE.values())
 
 
 @dataclass(frozen=True, slots=True)
@@ -96,7 +96,7 @@ class Binary:
 
     def evaluate(self, values: Mapping[str, float]) -> float:
         """Apply the operation."""
-        return _BINARY_FUNCTION[self.sign](self.left.evaluate(values), self.right.evaluate(values))
+        return BINARY_FUNCTION[self.sign](self.left.evaluate(values), self.right.evaluate(values))
 
 
 @dataclass(frozen=True, slots=True)
@@ -121,7 +121,7 @@ class Compare:
 
     def holds(self, values: Mapping[str, float]) -> bool:
         """Tell whether it is true."""
-        return _COMPARE_FUNCTION[self.sign](self.left.evaluate(values), self.right.evaluate(values))
+        return COMPARE_FUNCTION[self.sign](self.left.evaluate(values), self.right.evaluate(values))
 
 
 @dataclass(frozen=True, slots=True)

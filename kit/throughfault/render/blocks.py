@@ -26,9 +26,9 @@ from throughfault.render.html import (
     slug,
     table,
 )
-from throughfault.render.latex import formula_lines, worked_lines
+from throughfault.render.latex import formula_lines, worked_lines, worked_units
 from throughfault.render.mathml import mathml
-from throughfault.render.numbers import quantity_text
+from throughfault.render.numbers import quantity_text, unit_text
 
 __all__ = [
     "algorithm_block",
@@ -66,20 +66,53 @@ def _arguments(steps: Sequence[Step]) -> Markup:
         ]
         for name in steps[0].arguments
     ]
-    heads = [Column(step_name(step) if len(steps) > 1 else "Value", numeric=True) for step in steps]
+    heads = [Column(_identity(n) if len(steps) > 1 else "Value", numeric=True) for n in _short([s.id for s in steps])]
     return table("Where", ["Symbol", "Quantity", *heads], rows, "where several" if len(steps) > 1 else "where")
 
 
 def step_name(step: Step) -> Markup:
     """Write the id of a step so that it may break at its dots."""
-    return Markup('<span class="identity step-name">{}</span>').format(step.id.replace(".", ".\N{ZERO WIDTH SPACE}"))
+    return _identity(step.id)
+
+
+def _identity(name: str) -> Markup:
+    return Markup('<span class="identity step-name">{}</span>').format(name.replace(".", ".\N{ZERO WIDTH SPACE}"))
+
+
+def _short(ids: Sequence[str]) -> list[str]:
+    """Leave out of ids what they end and begin with in common: they stand in full above the table."""
+    names = [id_.split(".") for id_ in ids]
+    while min(map(len, names)) > 1 and len({name[-1] for name in names}) == 1:
+        names = [name[:-1] for name in names]
+    while min(map(len, names)) > 1 and len({name[0] for name in names}) == 1:
+        names = [name[1:] for name in names]
+    return [".".join(name) for name in names]
+
+
+def _worked_lines(step: Step) -> Markup:
+    """Set the worked lines; beside one whose numbers stand without units, their units in words."""
+    beside = (
+        Markup(' <span class="units identity">(numbers in {})</span>').format(", ".join(map(unit_text, units)))
+        if units
+        else Markup("")
+        for units in worked_units(step)
+    )
+    return joined(
+        Markup('<div class="equation worked">{}{}</div>').format(mathml(line, display=True), told)
+        for line, told in zip(worked_lines(step), beside, strict=True)
+    )
 
 
 def _worked(step: Step) -> Markup:
     result = quantity(f"steps/{step.id}/result", step.result.value, step.result.unit)
     return Markup('<div class="run"><p class="of">{}: {} = {}</p>{}</div>').format(
-        step_name(step), mathml(step.cell.result.latex), result, _lines(worked_lines(step), "equation worked")
+        step_name(step), mathml(step.cell.result.latex), result, _worked_lines(step)
     )
+
+
+def _work(steps: Sequence[Step]) -> Markup:
+    kind = "work below" if len(steps) > 1 else "work"
+    return Markup('<div class="{}"><div>{}</div>{}</div>').format(kind, joined(map(_worked, steps)), _arguments(steps))
 
 
 def formula_block(steps: Step | Sequence[Step], heading: Text | None = None, anchor: str = "step") -> Markup:
@@ -91,17 +124,14 @@ def formula_block(steps: Step | Sequence[Step], heading: Text | None = None, anc
     cell = runs[0].cell
     chunks = [runs[start : start + WIDEST] for start in range(0, len(runs), WIDEST)]
     return Markup(
-        '<section class="formula" aria-labelledby="{id}"><h4 id="{id}">{title}</h4>'
-        '<p class="source">{gives}. {source}</p>{formula}{work}</section>\n'
+        '<section class="formula" aria-labelledby="{id}"><div class="opening"><h4 id="{id}">{title}</h4>'
+        '<p class="source">{gives}. {source}</p>{formula}</div>{work}</section>\n'
     ).format(
         id=f"{anchor}-{slug(runs[0].id)}", title=label(cell.title) if heading is None else heading,
         source=clause(cell.source.citation, cell.source.provenance),
         gives=label(sentence(cell.result.description.rstrip("."))),
         formula=_lines(formula_lines(cell), "equation"),
-        work=joined(
-            Markup('<div class="work"><div>{}</div>{}</div>').format(joined(map(_worked, chunk)), _arguments(chunk))
-            for chunk in chunks
-        ),
+        work=joined(map(_work, chunks)),
     )  # fmt: skip
 
 

@@ -6,7 +6,7 @@ The author's order is kept, every product sign is written, brackets follow from 
 from __future__ import annotations
 
 import re
-from collections.abc import Callable
+from collections.abc import Callable, Iterator
 from dataclasses import dataclass, field
 from typing import Any
 
@@ -15,7 +15,7 @@ from throughfault.declare.formula import CONSTANTS, Binary, Call, Choice, Compar
 from throughfault.quantities import Quantity
 from throughfault.render.numbers import number_latex, unit_latex
 
-__all__ = ["formula_lines", "worked_lines"]
+__all__ = ["formula_lines", "worked_lines", "worked_units"]
 
 # Precedence: what binds tighter is larger. A quantity with a unit and a fraction may stand in a
 # product without brackets, yet not under a power.
@@ -51,8 +51,8 @@ def _symbol(symbol: Symbol) -> _Printed:
     return _Printed(symbol.latex, binds)
 
 
-def _quantity(quantity: Quantity) -> _Printed:
-    text, unit = number_latex(quantity.value), unit_latex(quantity.unit)
+def _quantity(quantity: Quantity, *, bare: bool = False) -> _Printed:
+    text, unit = number_latex(quantity.value), "" if bare else unit_latex(quantity.unit)
     if text.startswith("-"):
         return _Printed(text + unit, SUM)
     return _Printed(text + unit, ATOM if not unit and "times" not in text else POWER)
@@ -135,21 +135,42 @@ def formula_lines(cell: Cell[Any]) -> list[str]:
 
 
 def worked_lines(step: Step) -> list[str]:
-    """Print the same formula with the numbers and units of the run, each line closed by its result.
+    """Print the same formula with the numbers of the run, each line closed by its result with its unit.
 
-    Where the formula has a choice, the branch that applied stands with the comparison that chose it.
+    Units stand in the formula where it is true of quantities; otherwise the numbers stand alone, and `worked_units`
+    tells their units. Where the formula has a choice, the branch that applied stands with the comparison that chose it.
     """
     quantities = step.arguments | step.terms
+    bare = not step.cell.holds_as_quantities
     values = {term: quantity.value for term, quantity in quantities.items()}
     lines = []
     for line in step.cell.formula.lines:
-        printer = _Printer(lambda term: _quantity(quantities[term]), lambda test: test.holds(values))
+        printer = _Printer(lambda term: _quantity(quantities[term], bare=bare), lambda test: test.holds(values))
         worked = printer.node(line.node).text
         result = _quantity(step.result if line.term is None else step.terms[line.term]).text
         taken = r" \text{ and } ".join(printer.taken)
         because = rf" \quad \text{{as }} {taken}" if taken else ""
         lines.append(f"{_left(step.cell, line.term)} = {worked} = {result}{because}")
     return lines
+
+
+def _terms(node: object) -> Iterator[str]:
+    """Yield the terms of a tree in the order of the page."""
+    if isinstance(node, Name):
+        yield node.term
+    for slot in getattr(node, "__slots__", ()):
+        child = getattr(node, slot)
+        for part in child if isinstance(child, tuple) else (child,):
+            yield from _terms(part)
+
+
+def worked_units(step: Step) -> list[tuple[str, ...]]:
+    """Return for each worked line the units of the numbers that stand in it without, in the order of the page."""
+    cell = step.cell
+    if cell.holds_as_quantities:
+        return [() for _ in cell.formula.lines]
+    used = ([cell.symbol(t).unit for t in _terms(line.node) if t not in CONSTANTS] for line in cell.formula.lines)
+    return [tuple(dict.fromkeys(unit for unit in units if unit != "1")) for units in used]
 
 
 def _left(cell: Cell[Any], term: str | None) -> str:
