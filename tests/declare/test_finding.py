@@ -44,6 +44,15 @@ def test_a_signatory_replaces_a_limit_and_both_are_kept():
     assert entry["kit_limit"] == {"value": 250.0, "source": "a clause", "provenance": "recalled"}
 
 
+def test_text_of_a_point_is_rounded_and_its_values_are_not():
+    """Six significant digits are read; the values stay whole."""
+    point = OpenPoint(
+        "a", "{peak} after {cases}", {"peak": Quantity(4.50062193560628, "kA"), "cases": Quantity(12.0, "1")}
+    )
+    assert point.text == "4.50062 kA after 12"
+    assert point.entry()["values"]["peak"] == {"value": 4.50062193560628, "unit": "kA"}
+
+
 def test_a_check_not_assessed_says_why():
     """The reason stands in the entry."""
     assert Check("id", None, "1", None, "dynamic", reason="no design").entry()["reason"] == "no design"

@@ -167,6 +167,10 @@ class Check:
         return made
 
 
+def _rounded(quantity: Quantity) -> str:
+    return str(Quantity(float(f"{quantity.value:.6g}"), quantity.unit))
+
+
 @dataclass(frozen=True, slots=True)
 class OpenPoint:
     """Something a reviewer must settle or know; numbers stand in `values`, never loose in the text.
@@ -191,8 +195,8 @@ class OpenPoint:
 
     @property
     def text(self) -> str:
-        """The sentence with its numbers."""
-        return self.template.format(**{name: str(q) for name, q in self.values.items()})
+        """The sentence with its numbers to six significant digits; `values` hold them in full."""
+        return self.template.format(**{name: _rounded(q) for name, q in self.values.items()})
 
     def entry(self) -> dict[str, Any]:
         """Return the point as it stands in the results file."""
