@@ -7,7 +7,8 @@ import pytest
 from throughfault import notebook as tf
 from throughfault.declare import registry
 from throughfault.errors import InputError
-from throughfault.render.record import loose_digits
+from throughfault.render.numbers import full_value
+from throughfault.render.record import data_ids, loose_digits
 from throughfault.workbook.part import PARTS
 from throughfault.workbook.results import MIME, merge_fragments
 
@@ -38,6 +39,29 @@ def test_parts_left_out_are_emitted_at_the_end():
     )
     assert short["quantities"].keys() == whole["quantities"].keys()
     assert [case["id"] for case in short["cases"]] == [case["id"] for case in whole["cases"]]
+
+
+def test_declared_values_are_shown_with_the_verdict():
+    """The verdict part compares what the maker declares; all its numbers stand in the results."""
+    whole = merge_fragments([b[MIME] for b in bundles("BV-T1") if MIME in b])
+    (shown,) = bundles("BV-T1", ("verdict",))
+    assert "Declared by the maker, and calculated" in shown["text/html"]
+    held = {id_: value for id_, value in data_ids(shown["text/html"]) if id_.startswith("declared.")}
+    assert held
+    assert {i: full_value(whole["quantities"][i]["value"]) for i in held} == held
+    assert {i for i in whole["quantities"] if i.startswith("declared.")} == set(held)
+
+
+def test_a_step_is_worked_once():
+    """What the duty works out is not worked again under the requirement; the results keep both steps."""
+    book = tf.open_review(str(EXAMPLES / "BV-T1"))
+    found, duty = book.review.requirement.fragment.steps, book.review.duty.fragment.steps
+    again = [s for s in found if any(s.cell is d.cell and s.arguments == d.arguments for d in duty)]
+    shown = tf.requirement(book)._repr_mimebundle_()
+    ids = {id_.split("/")[1] for id_, _ in data_ids(shown["text/html"]) if id_.startswith("steps/")}
+    assert again
+    assert ids == {s.id for s in found} - {s.id for s in again}
+    assert {s["id"] for s in shown[MIME]["steps"]} == {s.id for s in found}
 
 
 def test_a_part_looks_the_same_in_every_run():

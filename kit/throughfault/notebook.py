@@ -23,7 +23,7 @@ from throughfault.render.parts.finding import requirement_part, thermal_part
 from throughfault.render.parts.signature import signature_part
 from throughfault.render.parts.summary import summary_part
 from throughfault.render.parts.unit_data import unit_data_part
-from throughfault.render.parts.verdict import open_point_part
+from throughfault.render.parts.verdict import declared_table, open_point_part
 from throughfault.render.parts.verdict import verdict_part as render_verdict
 from throughfault.workbook.assess.review import Review
 from throughfault.workbook.figures import duty_figures, thermal_figures
@@ -119,10 +119,14 @@ def _whole(book: Workbook) -> dict[str, Any]:
         "inputs": unit.raw,
         "verdicts": review.conclusion.verdicts,
         "route": review.conclusion.route,
-        "quantities": {k: v for f in review.fragments for k, v in f.entry()["quantities"].items()},
+        "quantities": _quantities(review),
         "checks": [check.entry() for check in review.conclusion.checks],
         "open_points": book.points,
     }
+
+
+def _quantities(review: Review) -> dict[str, Any]:
+    return {outcome.id: outcome.entry() for fragment in review.fragments for outcome in fragment.quantities}
 
 
 def _unit(review: Review) -> dict[str, str]:
@@ -139,7 +143,7 @@ def summary(book: Workbook) -> Shown:
     review = book.review
     unconfirmed = _unconfirmed(review)
     emitted = {"unit": _unit(review), "standard": review.standard, "unconfirmed": {"limits": len(unconfirmed)}}
-    return Shown(summary_part(_whole(book), unconfirmed, forces=True), emitted)
+    return Shown(summary_part(_whole(book), unconfirmed), emitted)
 
 
 def unit_data(book: Workbook) -> Shown:
@@ -150,12 +154,13 @@ def unit_data(book: Workbook) -> Shown:
 
 
 def requirement(book: Workbook) -> Shown:
-    """Show what the standard asks of the unit."""
+    """Show what the standard asks of the unit; steps that the duty shows as well are worked there."""
     found = book.review.requirement
+    worked = [(step.cell.name, step.arguments) for step in book.review.duty.fragment.steps]
     words = {True: "required", False: "extra"}
     html = requirement_part(
         found.fragment.entry(),
-        found.fragment.steps,
+        [step for step in found.fragment.steps if (step.cell.name, step.arguments) not in worked],
         Markup("{} {}").format(
             found.category.name or f"none: {found.category.note}",
             clause(found.category.source, found.category.provenance),
@@ -183,10 +188,12 @@ def thermal(book: Workbook) -> Shown:
 
 
 def verdict(book: Workbook) -> Shown:
-    """Show every check with its limit, and the verdicts."""
-    made = book.review.conclusion
-    html = render_verdict(made.verdicts, [c.entry() for c in made.checks], _unconfirmed(book.review), made.route)
-    return Shown(html, book.emit(made.fragment, verdicts=made.verdicts, route=made.route))
+    """Show every check with its limit, the verdicts, and what the maker declares beside what was calculated."""
+    review, made = book.review, book.review.conclusion
+    compared = declared_table(review.declared.entry()["quantities"], _quantities(review))
+    checks = [check.entry() for check in made.checks]
+    html = render_verdict(made.verdicts, checks, _unconfirmed(review), made.route, compared)
+    return Shown(html, book.emit(made.fragment, review.declared, verdicts=made.verdicts, route=made.route))
 
 
 def open_point(book: Workbook) -> Shown:

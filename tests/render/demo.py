@@ -257,7 +257,7 @@ def html():
         )
     }
     return {
-        "summary": parts.summary_part(RESULTS, UNCONFIRMED, forces=True),
+        "summary": parts.summary_part(RESULTS, UNCONFIRMED),
         "unit_data": parts.unit_data_part(INPUTS, DEFAULTS),
         "requirement": parts.requirement_part(
             REQUIREMENT.entry(),

@@ -1,5 +1,8 @@
 """Blocks escape every text and mark every number."""
 
+import re
+from dataclasses import replace
+
 import pytest
 from markupsafe import Markup
 from tests.render import demo
@@ -19,6 +22,8 @@ from throughfault.render.html import (
     quantity,
     section,
     slug,
+    source_text,
+    spanned_table,
     table,
     version,
 )
@@ -32,6 +37,7 @@ HOSTILE = "</script><script>alert(1)</script>\"'><img src=x onerror=alert(1)>&am
     lambda t: clause(t, t), prose, lambda t: prose(f"`{t}`"), lambda t: note(t, t), lambda t: items([t]),
     lambda t: definitions([(t, t)]), lambda t: section(t, t, id=t), lambda t: figure(t, t, t, t),
     lambda t: table(t, [t, t], [[t, t]]), lambda t: table(t, [t], {t: [[t]]}), lambda t: quantity(t, 1.0, "1"),
+    lambda t: spanned_table(t, [t, t], {t: [[t]]}),
 ])  # fmt: skip
 def test_hostile_text_is_inert(made):
     """No text becomes an element or leaves its attribute."""
@@ -71,6 +77,53 @@ def test_data_keeps_the_full_value():
     )
     assert quantity("a", 1.0, "kA") == Markup('<data value="1.0" data-id="a">1\N{NO-BREAK SPACE}kA</data>')
     assert quantity("a", None, "kA") == Markup('<span class="absent">not assessed</span>')
+
+
+@pytest.mark.parametrize(("citation", "told"), [
+    ("IEC60076-5:2006, 4.1.5", "IEC 60076-5:2006, 4.1.5"),
+    ("IEEEC57.12.00-2015, 7.4", "IEEE C57.12.00-2015, 7.4"),
+    ("IECTR60909-4, 3.2", "IEC TR 60909-4, 3.2"),
+    ("CircuitTheory, phase-domain network", "circuit theory, phase-domain network"),
+    ("HeatBalance, all heat stored", "heat balance, all heat stored"),
+    ("CommonPractice", "common practice"),
+    ("Wagner-Evans-1933, p. 12", "Wagner, Evans (1933), p. 12"),
+    ("Rao-Switchgear, p. 3", "Rao, Switchgear, p. 3"),
+    ("MakerRules, sheet 12", "MakerRules, sheet 12"),
+    ("unit file, declared", "unit file, declared"),
+])  # fmt: skip
+def test_sources_are_written_in_words(citation, told):
+    """Keys of the bibliography become words; standards keep their designations, other texts stay as they are."""
+    assert source_text(citation) == told
+    assert source_text(told) == told
+
+
+def test_units_stand_beside_numbers_without():
+    """A formula of numbers has its units in plain text beside the worked line; one of quantities has none."""
+    assert '<span class="units identity">(numbers in °C, A/mm², s)</span></div>' in formula_block(demo.steps()[1])
+    assert "numbers in" not in formula_block(demo.steps()[2])
+
+
+def test_a_formula_stays_with_its_first_evaluations():
+    """Heading, formula, first runs and their table are one block; later ones follow, each with its table."""
+    step = demo.steps()[1]
+    shown = formula_block([replace(step, id=f"s{n}") for n in range(4)])
+    opening, first, last = re.split(r'<div class="work(?: below)?">', shown)
+    assert '<div class="opening"><h4' in opening
+    assert [part.count("<table") for part in (opening, first, last)] == [0, 1, 1]
+    assert [part.count('<div class="run">') for part in (opening, first, last)] == [0, 3, 1]
+
+
+@pytest.mark.parametrize(("ids", "heads"), [
+    (("a.HV.x", "a.LV.x"), ("HV", "LV")),
+    (("duty.form.HV-LV.x", "duty.form.HV-LV.minus.x"), ("HV-LV", "HV-LV.minus")),
+    (("peak", "duty.peak"), ("peak", "duty.peak")),
+    (("a.x", "a.x"), ("a", "a")),
+])  # fmt: skip
+def test_heads_of_evaluations_leave_out_what_they_have_in_common(ids, heads):
+    """Above the table each id stands in full; its column is headed by what tells it from its neighbours."""
+    shown = formula_block([replace(demo.steps()[1], id=id_) for id_ in ids])
+    found = re.findall(r'<th scope="col" class="number"><span class="identity step-name">(.*?)</span>', shown)
+    assert tuple(head.replace("\N{ZERO WIDTH SPACE}", "") for head in found) == heads
 
 
 def test_names_in_a_sentence():

@@ -1,9 +1,12 @@
 """The sections of a record show every number as data that the results file holds."""
 
+import re
+
 import pytest
 from tests.render import demo
 
 from throughfault.render import parts
+from throughfault.render.html import table
 from throughfault.render.numbers import full_value
 from throughfault.render.record import data_ids, lint, loose_digits
 from throughfault.workbook.results import lookup
@@ -148,11 +151,56 @@ def test_first_page_lists_what_bars_approval_first():
 
 
 def test_cautions():
-    """The margins of the force models are stated once forces are computed."""
-    assert "carry margins" not in parts.cautions()
-    assert "carry margins" in parts.cautions(forces=True)
-    for told in ("withstand only", "re-energise", "maker&#39;s responsibility", "licensed practice", "live workbook"):
+    """What every record says, the margins of the force models among it."""
+    for told in (
+        "carry margins",
+        "withstand only",
+        "re-energise",
+        "maker&#39;s responsibility",
+        "licensed practice",
+        "live workbook",
+    ):
         assert told in parts.cautions()
+
+
+def test_first_page_names_the_governing_case_of_each_quantity():
+    """Current, peak and temperature of one winding may be governed by different cases; each row has its own."""
+    cases = ("plus/LV/LL/HV", "minus/LV/3ph/HV", "minus/LV/LG/HV")
+    ids = ("duty.HV.symmetrical", "duty.HV.peak", "thermal.HV.temperature")
+    made = {i: {**demo.RESULTS["quantities"][i], "governing_case": c} for i, c in zip(ids, cases, strict=True)}
+    shown = parts.summary_part({**demo.RESULTS, "quantities": made}, ())
+    rows = re.findall(r"<tr>(.*?)</tr>", shown[shown.index("Governing case of each") :], re.DOTALL)[1:4]
+    assert '<th scope="rowgroup" rowspan="3"><span class="identity">HV</span></th>' in rows[0]
+    for id_, case, row in zip(ids, cases, rows, strict=True):
+        assert [i for i, _ in data_ids(row)] == [id_]
+        assert case in row.replace("\N{ZERO WIDTH SPACE}", "")
+        assert "<math" in row
+    assert "Governing case of each" not in parts.summary_part({**demo.RESULTS, "quantities": {}}, ())
+
+
+def test_declared_values_stand_beside_calculated_ones():
+    """One row a declared value, every number of it in the results; a zero has no deviation; nothing declared, no table."""
+    declared = {
+        "declared.duty.HV.peak": demo.outcome("a", 4.0, "kA", ""),
+        "declared.duty.HV.peak.deviation": demo.outcome("b", 0.725, "%", ""),
+        "declared.duty.LV.peak": demo.outcome("c", 0.0, "kA", ""),
+    }
+    entries = {name: outcome.entry() for name, outcome in declared.items()}
+    quantities = demo.RESULTS["quantities"] | entries
+    shown = parts.declared_table(entries, quantities)
+    assert data_ids(shown) == [
+        ("declared.duty.HV.peak", "4.0"), ("duty.HV.peak", "4.029"), ("declared.duty.HV.peak.deviation", "0.725"),
+        ("declared.duty.LV.peak", "0.0"), ("duty.LV.peak", "9.3047"),
+    ]  # fmt: skip
+    assert loose_digits(shown) == []
+    assert parts.declared_table({}, quantities) == ""
+
+
+def test_a_long_table_may_break():
+    """A table of many rows may break across printed pages, a short one may not."""
+    rows = [["a", "b"]] * 16
+    assert '<table class="results long">' in table("t", ["x", "y"], rows, "results")
+    assert '<table class="results">' in table("t", ["x", "y"], rows[1:], "results")
 
 
 def test_signatures_and_how_to_verify():

@@ -53,7 +53,7 @@ def test_a_cell_shows_everything_declared():
         f"  J    A/mm²  current_density      {AVERAGE.arguments['current_density'].description}",
         "  t    s      duration             duration of the fault",
         f"  θ_1  °C     {AVERAGE.result.term:<19}  {AVERAGE.result.description}", "",
-        "Source", "  CircuitTheory, sample (derived)", "",
+        "Source", "  circuit theory, sample (derived)", "",
         "Range", "  duration above 0 and at most 10 s", "  J^2 t below 106000", "",
         "Assumes", "  Heat stays in the conductor.", "",
         "Checks behind it", "  none",
@@ -77,7 +77,7 @@ def test_the_list_of_cells():
     """Name, title, source; an empty library is said."""
     assert cell_list([AVERAGE]).splitlines() == [
         "Cell     Gives   Source",
-        "average  Sample  CircuitTheory, sample",
+        "average  Sample  circuit theory, sample",
     ]
     assert cell_list([]) == "The cell library is empty."
 

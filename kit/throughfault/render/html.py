@@ -13,6 +13,7 @@ from dataclasses import dataclass
 from markupsafe import Markup, escape
 
 from throughfault.render.numbers import full_value, number_text, quantity_text
+from throughfault.sources import bibliography
 
 __all__ = [
     "NOT_ASSESSED",
@@ -37,15 +38,20 @@ __all__ = [
     "sentence",
     "slug",
     "source_text",
+    "spanned_table",
     "table",
     "version",
 ]
 
 Text = str | Markup
 Value = float | int | str | bool
+LONG = 15  # rows of a table that may break across printed pages
 NOT_ASSESSED = Markup('<span class="absent">not assessed</span>')
 _NAME = re.compile(r"`([^`]+)`|(?<!\w)'([^']+)'(?!\w)")
-_BODY = re.compile(r"^(IEC|IEEE)(?=[0-9C])")
+_BODY = re.compile(r"^(IEC|IECTR|IEEE)(?=[0-9C])")
+_STANDARD = re.compile(r"IEC|IEEE")
+_WORD = re.compile(r"(?<=[a-z])(?=[A-Z])")
+_YEAR = re.compile(r"-(\d{4})$")
 
 
 def joined(parts: Iterable[Text], between: Text = "") -> Markup:
@@ -86,8 +92,19 @@ def version(text: object) -> Markup:
 
 
 def source_text(citation: str) -> str:
-    """Write a citation as the trade does, ``IEC 60076-5:2006, 4.1.5``."""
-    return _BODY.sub(r"\1 ", citation)
+    """Write a citation as the trade does, ``IEC 60076-5:2006, 4.1.5``; other keys of the bibliography in words."""
+    key, comma, where = citation.partition(",")
+    if key in bibliography() and not _STANDARD.match(key):
+        return _words(key) + comma + where
+    return _BODY.sub(lambda m: m[1].replace("IECTR", "IEC TR") + " ", citation)
+
+
+def _words(key: str) -> str:
+    """Write the key of a theory or a book: ``circuit theory``, ``Wagner, Evans (1933)``."""
+    parts = _WORD.split(key)
+    if len(parts) > 1:
+        return " ".join(parts).lower()
+    return _YEAR.sub(r" (\1)", key).replace("-", ", ")
 
 
 def clause(citation: str, provenance: str | None = None) -> Markup:
@@ -160,13 +177,13 @@ class Column:
     numeric: bool = False
 
 
-def _cells(columns: Sequence[Column], row: Sequence[Text]) -> Markup:
+def _cells(columns: Sequence[Column], row: Sequence[Text], before: Text = "") -> Markup:
     first = Markup('<th scope="row">{}</th>').format(row[0])
     rest = (
         Markup('<td class="number">{}</td>').format(cell) if column.numeric else Markup("<td>{}</td>").format(cell)
         for column, cell in zip(columns[1:], row[1:], strict=True)
     )
-    return Markup("<tr>{}{}</tr>\n").format(first, joined(rest))
+    return Markup("<tr>{}{}{}</tr>\n").format(before, first, joined(rest))
 
 
 def _head(column: Column) -> Markup:
@@ -182,13 +199,34 @@ def table(
 ) -> Markup:
     """Set a table; the first cell of a row heads it. A mapping gives groups of rows by their heading."""
     made = [column if isinstance(column, Column) else Column(column) for column in columns]
-    head = joined(_head(column) for column in made)
     groups: Mapping[Text, Sequence[Sequence[Text]]] = rows if isinstance(rows, Mapping) else {"": rows}
     bodies = []
     for heading, group in groups.items():
         title = Markup('<tr class="group"><th scope="rowgroup" colspan="{}">{}</th></tr>\n').format(len(made), heading)
         body = joined(_cells(made, row) for row in group)
         bodies.append(Markup("<tbody>{}{}</tbody>\n").format(title if heading else "", body))
+    long = sum(len(group) for group in groups.values()) > LONG
+    return _framed(caption, made, bodies, f"{kind} long" if long else kind)
+
+
+def spanned_table(
+    caption: Text,
+    columns: Sequence[Column | str],
+    groups: Mapping[str, Sequence[Sequence[Text]]],
+    kind: str = "plain",
+) -> Markup:
+    """Set groups of rows, each with its name in the first column beside all of them."""
+    made = [column if isinstance(column, Column) else Column(column) for column in columns]
+    bodies = []
+    for name, group in groups.items():
+        heading = Markup('<th scope="rowgroup" rowspan="{}">{}</th>').format(len(group), identity(name))
+        rows = (_cells(made[1:], row, "" if number else heading) for number, row in enumerate(group))
+        bodies.append(Markup("<tbody>{}</tbody>\n").format(joined(rows)))
+    return _framed(caption, made, bodies, kind)
+
+
+def _framed(caption: Text, columns: Sequence[Column], bodies: Sequence[Markup], kind: str) -> Markup:
+    head = joined(_head(column) for column in columns)
     return Markup(
         '<div class="scroll"><table class="{}"><caption>{}</caption><thead><tr>{}</tr></thead>\n{}</table></div>\n'
     ).format(kind, caption, head, joined(bodies))  # fmt: skip

@@ -6,10 +6,11 @@ from throughfault.render.parts.finding import finding_part, requirement_part, th
 from throughfault.render.parts.signature import signature_part
 from throughfault.render.parts.summary import summary_part
 from throughfault.render.parts.unit_data import unit_data_part
-from throughfault.render.parts.verdict import open_point_part, verdict_part
+from throughfault.render.parts.verdict import declared_table, open_point_part, verdict_part
 
 __all__ = [
     "cautions",
+    "declared_table",
     "duty_part",
     "finding_part",
     "open_point_part",

@@ -26,7 +26,7 @@ def _margins() -> Markup:
     ).format(mathml(r"\pm 30\,\%"), mathml(r"\pm 3\,\%"))
 
 
-def cautions(*, forces: bool = False) -> Markup:
-    """List the cautions; `forces` adds the margins of the force models."""
-    said: list[Text] = [*_ALWAYS, _margins()] if forces else [*_ALWAYS]
+def cautions() -> Markup:
+    """List the cautions, the margins of the force models among them."""
+    said: list[Text] = [*_ALWAYS, _margins()]
     return section("Cautions", items(said), id="cautions", kind="cautions", level=3)

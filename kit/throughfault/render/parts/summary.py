@@ -8,9 +8,23 @@ from typing import Any
 from markupsafe import Markup
 
 from throughfault.render.blocks import open_point_list
-from throughfault.render.html import Text, clause, definitions, identity, section, source_text, version
+from throughfault.render.html import (
+    Column,
+    Text,
+    clause,
+    definitions,
+    identity,
+    joined,
+    quantity,
+    section,
+    sentence,
+    source_text,
+    spanned_table,
+    version,
+)
+from throughfault.render.mathml import mathml
 from throughfault.render.parts.caution import cautions
-from throughfault.render.parts.result import result_matrix
+from throughfault.render.parts.result import case_name
 from throughfault.render.parts.verdict import unconfirmed_limits, verdict_table
 
 __all__ = ["summary_part"]
@@ -23,11 +37,23 @@ _MEASURES = {
 }
 
 
-def _place(id_: str) -> tuple[str, str] | None:
-    first, _, rest = id_.partition(".")
-    name, _, measure = rest.rpartition(".")
-    found = _MEASURES.get((first, measure))
-    return (name, found) if found and name else None
+def _governing(quantities: Mapping[str, Entry]) -> Markup:
+    """Set one row a winding and quantity, those of a winding below each other: each has its own governing case."""
+    by_winding: dict[str, list[list[Text]]] = {}
+    for id_, entry in quantities.items():
+        first, _, rest = id_.partition(".")
+        name, _, measure = rest.rpartition(".")
+        told = _MEASURES.get((first, measure))
+        if not name or told is None:
+            continue
+        symbol = mathml(entry["symbol"]) if entry["symbol"] else ""
+        value = quantity(id_, entry["value"], entry["unit"])
+        named = joined([sentence(told), symbol], " ")
+        by_winding.setdefault(name, []).append([named, value, case_name(entry["governing_case"])])
+    if not by_winding:
+        return Markup("")
+    columns: list[Column | str] = ["Winding", "Quantity", Column("Value", numeric=True), "Governing case"]
+    return spanned_table("Governing case of each winding", columns, by_winding, "governing")
 
 
 def _identity(results: Entry) -> Markup:
@@ -49,7 +75,7 @@ def _points(results: Entry, unconfirmed: Sequence[str]) -> list[Entry]:
     return sorted(points, key=lambda point: not point["blocking"])
 
 
-def summary_part(results: Entry, unconfirmed: Sequence[str], *, forces: bool = False) -> Markup:
+def summary_part(results: Entry, unconfirmed: Sequence[str]) -> Markup:
     """Make the first page.
 
     Parameters
@@ -58,17 +84,15 @@ def summary_part(results: Entry, unconfirmed: Sequence[str], *, forces: bool = F
         In the form of the results file: unit, standard, kit, inputs, verdicts, checks, quantities, open_points.
     unconfirmed
         Ids of the checks whose verdict rests on a recalled limit.
-    forces
-        Whether the review computes forces, so that the margins of their models are stated.
     """
     first = section(
         "Summary",
         _identity(results),
         verdict_table(results["verdicts"], results["checks"]),
         unconfirmed_limits(unconfirmed),
-        result_matrix("Governing case of each winding", "Winding", results["quantities"], _place, "first peak"),
+        _governing(results["quantities"]),
         section("Open points", open_point_list(_points(results, unconfirmed)), id="summary-points", level=3),
-        cautions(forces=forces),
+        cautions(),
         id="summary", kind="part first",
     )  # fmt: skip
     return first + Markup('<nav class="contents"></nav>')

@@ -8,11 +8,12 @@ from typing import Any
 from markupsafe import Markup
 
 from throughfault.render.blocks import check_table, missing_list, open_point_list
-from throughfault.render.html import Text, code, data, items, joined, section, table
+from throughfault.render.html import Column, Text, breakable, code, data, items, joined, quantity, section, table
 
-__all__ = ["open_point_part", "unconfirmed_limits", "verdict_part", "verdict_table"]
+__all__ = ["declared_table", "open_point_part", "unconfirmed_limits", "verdict_part", "verdict_table"]
 
 Entry = Mapping[str, Any]
+DECLARED = "declared."
 _ABILITY = {"thermal": "Thermal ability", "dynamic": "Dynamic ability", "overall": "Overall"}
 
 
@@ -78,6 +79,33 @@ def verdict_part(
         "Checks and verdict", by_ability, legend, verdict_table(verdicts, checks), said,
         unconfirmed_limits(unconfirmed), content, id="verdict",
     )  # fmt: skip
+
+
+def declared_table(declared: Mapping[str, Entry], quantities: Mapping[str, Entry]) -> Markup:
+    """Set what the maker declares beside what was calculated; empty where nothing is declared.
+
+    Parameters
+    ----------
+    declared
+        Results ``declared.<id>`` and ``declared.<id>.deviation``.
+    quantities
+        The calculated results by id.
+    """
+    rows: list[list[Text]] = []
+    for id_, entry in declared.items():
+        name = id_.removeprefix(DECLARED)
+        found = quantities.get(name)
+        if found is None:  # a deviation, or a result of no such name
+            continue
+        deviation = declared.get(f"{id_}.deviation")
+        rows.append([
+            breakable(name),
+            quantity(id_, entry["value"], entry["unit"]),
+            quantity(name, found["value"], found["unit"]),
+            quantity(f"{id_}.deviation", deviation["value"], deviation["unit"]) if deviation else "",
+        ])  # fmt: skip
+    numbers = [Column(head, numeric=True) for head in ("Declared", "Calculated", "Deviation")]
+    return table("Declared by the maker, and calculated", ["Result", *numbers], rows) if rows else Markup("")
 
 
 def open_point_part(points: Sequence[Entry], missing: Sequence[Entry]) -> Markup:
