@@ -11,8 +11,8 @@ from throughfault.render.plots.style import ACCENT, INK, MARKERS, axes, look
 
 __all__ = ["duty_by_case"]
 
-ROW_HEIGHT = 0.24  # inches
-PANEL_HEIGHT = 0.75
+ROW_HEIGHT = 0.19  # inches
+PANEL_HEIGHT = 0.62
 SPREAD = 0.5  # of a row, between the first and the last tapping
 
 
@@ -29,7 +29,7 @@ def _draw(ax: Any, winding: str, cases: Sequence[Mapping[str, Any]], rows: list[
         at = [rows.index(_row(case)) + shift for case, _ in here]
         peaks = [peak for _, peak in here]
         ax.plot(peaks, at, linestyle="", marker=MARKERS[number % len(MARKERS)], markersize=4.2, markerfacecolor="white",
-                markeredgecolor=INK, markeredgewidth=0.9, label=tapping)  # fmt: skip
+                markeredgecolor=INK, markeredgewidth=0.9, label=tapping, clip_on=False)  # fmt: skip
         for y, (case, peak) in zip(at, here, strict=True):
             if worst is None or peak > worst[0]:
                 worst = (peak, y, case["id"])

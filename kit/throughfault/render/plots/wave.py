@@ -35,7 +35,7 @@ def fault_wave(
         Instant in ms and current in kA of the first peak, marked and labelled.
     """
     with look():
-        drawn, (ax,) = axes(2.9)
+        drawn, (ax,) = axes(2.4)
         if envelope is not None:
             ax.plot(time, envelope, color=GREY, linestyle=LINES[1], linewidth=1.0, label="envelope")
         if offset is not None:
