@@ -14,7 +14,6 @@ from throughfault.render.numbers import (
     full_value,
     number_latex,
     number_text,
-    quantity_latex,
     quantity_text,
     unit_latex,
     unit_text,
@@ -92,4 +91,3 @@ def test_units_for_readers():
     assert [unit_text(u) for u in ("1", "A/mm^2", "degC", "ohm", "A^2 s/mm^4")] == ["", "A/mm²", "°C", "Ω", "A²·s/mm⁴"]
     assert quantity_text(25.5, "A/mm^2") == "25.5\N{NO-BREAK SPACE}A/mm²"
     assert quantity_text(2.0, "1") == "2"
-    assert quantity_latex(105.0, "degC") == r"105\,\mathrm{°C}"

@@ -20,7 +20,6 @@ __all__ = [
     "full_value",
     "number_latex",
     "number_text",
-    "quantity_latex",
     "quantity_text",
     "unit_latex",
     "unit_text",
@@ -132,8 +131,3 @@ def quantity_text(value: float, unit: str, digits: int = DIGITS) -> str:
     written = unit_text(unit)
     space = "" if written in ("", "°") else "\N{NO-BREAK SPACE}"
     return f"{number_text(value, digits)}{space}{written}"
-
-
-def quantity_latex(value: float, unit: str, digits: int = DIGITS) -> str:
-    """Write a number with its unit in LaTeX."""
-    return number_latex(value, digits) + unit_latex(unit)

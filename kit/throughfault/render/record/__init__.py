@@ -2,7 +2,7 @@
 
 from throughfault.render.record.exporter import RecordExporter, export_record
 from throughfault.render.record.lint import lint
-from throughfault.render.record.normalise import normalise, notebook_text
+from throughfault.render.record.normalise import normalise
 from throughfault.render.record.shown import data_ids, loose_digits
 
 __all__ = [
@@ -12,5 +12,4 @@ __all__ = [
     "lint",
     "loose_digits",
     "normalise",
-    "notebook_text",
 ]

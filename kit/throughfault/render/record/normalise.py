@@ -2,12 +2,11 @@
 
 from __future__ import annotations
 
-import json
 from typing import Any
 
 from nbformat import NotebookNode, from_dict
 
-__all__ = ["normalise", "notebook_text"]
+__all__ = ["normalise"]
 
 _CELL_METADATA = ("tags", "editable", "deletable")
 _NOTEBOOK_METADATA = ("kernelspec", "language_info", "throughfault")
@@ -46,8 +45,3 @@ def normalise(notebook: NotebookNode) -> NotebookNode:
         metadata["kernelspec"] = _KERNEL
     made: NotebookNode = from_dict({"cells": cells, "metadata": metadata, "nbformat": 4, "nbformat_minor": 5})
     return made
-
-
-def notebook_text(notebook: NotebookNode) -> str:
-    """Write a normalised notebook as deterministic JSON."""
-    return json.dumps(normalise(notebook), ensure_ascii=False, indent=1, sort_keys=True) + "\n"
