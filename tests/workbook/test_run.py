@@ -260,7 +260,7 @@ sys.exit(run(["review", sys.argv[1], "--out", sys.argv[2]]))
     ids=["kernel killed", "interrupted", "terminated", "hung up", "hung up and terminated"],
 )
 def test_a_run_cut_short_leaves_the_old_record(record, action, code, message):
-    """A killed kernel, Ctrl-C or the end of the session leaves the old record, no half one, and says so."""
+    """A killed kernel, Ctrl-C or a closed terminal leaves the old record, no half one, and says so."""
     before = {p.name: p.read_bytes() for p in record.iterdir() if p.is_file()}
     script = KILLED.replace("{action}", action)
     done = subprocess.run(

@@ -12,7 +12,7 @@ from contextlib import contextmanager, suppress
 import click
 
 from throughfault import __version__
-from throughfault.cli.library import assemble, cells, new, schema
+from throughfault.cli.catalogue import assemble, cells, new, schema
 from throughfault.cli.record import reproduce, sign, verify
 from throughfault.cli.review import check, review
 from throughfault.errors import EXIT_KIT_FAULT, InputError, KitError
