@@ -327,13 +327,14 @@ def test_an_edition_that_is_not_carried_is_refused(call, tmp_path, record, named
     path.write_text(text, encoding="utf-8")
     (record / "inputs" / "unit.toml").write_text(text, encoding="utf-8")
     sentence = (
-        'throughfault: standard: must be one of "IEC 60076-5", "IEC 60076-5:2006", "IEEE C57.12.00", '
+        'standard: must be one of "IEC 60076-5", "IEC 60076-5:2006", "IEEE C57.12.00", '
         f'"IEEE C57.12.00-2015", got {named!r} (did you mean '
     )
     for arguments in (("check", path), ("review", path, "--out", tmp_path / "new"), ("reproduce", record)):
         code, out, err = call(*arguments)
         assert (code, out) == (2, "")
-        assert err.startswith(sentence)
+        name = record / "inputs" / "unit.toml" if arguments[0] == "reproduce" else path
+        assert err.startswith(f"throughfault: {name}: {sentence}")
         assert err.count("\n") == 1
     assert not (tmp_path / "new").exists()
 

@@ -62,7 +62,7 @@ def outlook(path: Path) -> Outlook:
         If the kit does not carry the standard, or a limit is of no use.
     """
     unit = read_unit(path)
-    rules_for(unit)
+    rules_for(unit, str(path))
     review = Review(unit)
     points = _once((*unit.warnings, *review.requirement.fragment.open_points))
     missing = dict.fromkeys(m for fragment in review.fragments for m in fragment.missing)

@@ -159,7 +159,8 @@ def reproduce(record: Path, template: Path | None = None, *, progress: bool = Fa
         If the workbook cannot be executed.
     """
     old = read_results(record)
-    rules_for(read_unit(record / "inputs" / UNIT_FILE))
+    unit_file = record / "inputs" / UNIT_FILE
+    rules_for(read_unit(unit_file), str(unit_file))
     chosen, notes = _template_of(old, template)
     was = old["kit"]["version"]
     if was != __version__:

@@ -57,7 +57,7 @@ def review(unit_file: Path, out: Path, template: str | None = None, *, progress:
         If the workbook could not be executed. In every case nothing is written.
     """
     unit = read_unit(unit_file)
-    rules_for(unit)
+    rules_for(unit, str(unit_file))
     chosen = read_template(find_template(template or default_template(unit)))
     name = f"{unit.identity.tag}-{unit.identity.revision}"
     recover_exchange(out / name)

@@ -104,7 +104,22 @@ def test_out_of_phase_closing_needs_a_second_network():
     """With one network nothing can be closed on, and the missing one is named."""
     (missing,) = duty_of(make(system='out_of_phase = "180 deg"')).fragment.missing
     assert missing.id == "duty.out_of_phase.HV"
-    assert missing.keys == ("system.<other winding>.short_circuit_power",)
+    assert missing.keys == ("system.LV.short_circuit_power",)
+
+
+def test_out_of_phase_closing_that_was_asked_for_and_not_run_blocks_the_verdict():
+    """A case that the file asks for counts as one that applies."""
+    review = assessed(system='out_of_phase = "180 deg"')
+    assert review.conclusion.verdicts["thermal"] == "not assessed"
+
+
+def test_a_neutral_that_no_case_loads_is_no_zero():
+    """Without a zero-sequence path but the core's the neutral's current is not assessed, nor is what it flows through."""
+    more = '[neutral.LV]\nshort_time_current = "1 kA"\nduration = "2 s"\n'
+    duty = duty_of(make(group="Yyn0", core="five-limb", more=more))
+    found = {o.id: o for o in duty.fragment.quantities}
+    assert found["duty.neutral.LV"].value is None
+    assert {check.verdict for check in duty.fragment.checks} == {"not assessed"}
 
 
 def test_a_fault_fed_past_the_transformer_is_not_asked_of_it():

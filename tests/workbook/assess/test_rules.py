@@ -146,7 +146,7 @@ def test_the_system_counts_for_more_than_two_separate_windings():
     """IEC leaves the system out of two separate windings only; IEEE goes by category alone."""
     found = IEC.source_neglected("I", 0.01, two_winding=False)
     assert (found.neglected, found.reason) == (
-        False, "the system impedance is left out of units with two separate windings only",
+        False, "the system impedance counts: only units with two separate windings may leave it out",
     )  # fmt: skip
     assert IEEE.source_neglected("I", 0.01, two_winding=False).neglected
 

@@ -9,8 +9,21 @@ from markupsafe import Markup
 
 from throughfault.declare import Algorithm, Step
 from throughfault.render.blocks import algorithm_block, check_table, formula_blocks
-from throughfault.render.html import Column, Text, breakable, data, identity, joined, note, section, table
-from throughfault.render.numbers import decimals_of
+from throughfault.render.html import (
+    Column,
+    Text,
+    breakable,
+    clause,
+    data,
+    identity,
+    joined,
+    label,
+    note,
+    quantity,
+    section,
+    table,
+)
+from throughfault.render.numbers import decimals_of, quantity_text
 from throughfault.render.parts.result import case_name, origins, reasons, result_list, result_matrix
 
 __all__ = ["duty_part"]
@@ -141,6 +154,7 @@ def duty_part(
         result_matrix(title, "Winding", quantities, _of_winding, "peak"),
         result_matrix("At the line terminals", "Terminal", quantities, _of_terminal, "peak"),
         result_matrix("Peak factor that decides, and others", "Winding", quantities, _of_factor, "peak_factor"),
+        _governing(quantities, cases),
         result_list("Neutrals and further currents", _further(quantities)),
         reasons(quantities), origins(quantities),
     ])  # fmt: skip
@@ -155,10 +169,41 @@ def duty_part(
     return section("Fault currents", *parts, id="duty")
 
 
+def _governing(quantities: Mapping[str, Entry], cases: Sequence[Entry]) -> Markup:
+    """Tell of each governing case how its peak factor came about."""
+    named: dict[str, list[str]] = {}
+    for id_, entry in quantities.items():
+        if _of_winding(id_) is not None and entry["governing_case"]:
+            named.setdefault(entry["governing_case"], []).append(id_)
+    rows = []
+    for case in cases:
+        if case["id"] in named and "driving_point" in case:
+            at, head = case["driving_point"], f"cases/{case['id']}"
+            parts = [(f"{head}/driving_point/{name}", at[name]) for name in ("resistance", "reactance")]
+            shown: list[Text] = [data(id_, value, quantity_text(value, at["unit"])) for id_, value in parts]
+            factor = case["peak_factor"]
+            chosen = quantity(f"{head}/peak_factor/value", factor["value"], "1")
+            source = Markup("{}; {}").format(label(factor["how"]), clause(factor["source"]))
+            rows.append([case_name(case["id"]), *shown, chosen, source])
+    if not rows:
+        return Markup("")
+    columns: list[Column | str] = [
+        "Case", Column("R at the fault", numeric=True), Column("X at the fault", numeric=True),
+        Column("Peak factor", numeric=True), "How it was found",
+    ]  # fmt: skip
+    told = note(
+        "The factor belongs to the whole network seen from the fault, with the resistances that let the offset decay. "
+        "The exact peak is that of the winding's own current, whose share of the offset may differ."
+    )
+    return table("Cases that govern a winding", columns, rows, "results") + told
+
+
 def _every_case(cases: Sequence[Entry]) -> list[Markup]:
     return [
         note(
-            "A case is named by tapping, faulted terminal, kind of fault, infeed, and by what of the data was varied. "
+            "A case is named by tapping, faulted terminal, kind of fault, infeed, and by what of the data was varied: "
+            "minimum for the lowest network powers, tolerance for impedances less their tolerance, a ratio of zero- to "
+            "positive-sequence impedance of a network (named in brackets) or of the transformer where none is given. "
             "Cases beyond the standard's are marked extra; they count for the governing values as well. Faults fed by "
             "their own terminal's network alone, with no current in the transformer, are left out here. Every phase of "
             "windings, terminals and neutrals, with its angle, stands in the results file."

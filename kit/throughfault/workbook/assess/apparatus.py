@@ -118,5 +118,5 @@ def _check(
     if given is not None and isinstance(given.value, Quantity):
         limit = limit.replaced(given.value, given.source)
     value, case = current
-    reason = None if value is not None else "no case could be run for the current through it"
+    reason = None if value is not None else "no case was run that gives the current through it"
     return Check(f"apparatus.{name}", value, "kA", limit, ability, case, reason)

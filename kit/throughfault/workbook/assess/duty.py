@@ -27,7 +27,7 @@ __all__ = ["Duty", "Largest", "WindingDuty", "assess_duty", "completeness_checks
 
 EARTH_FAULT = "duty.earth_fault."
 #: what is missing under these ids hides cases that may govern
-HIDING = (EARTH_FAULT, "duty.infeed", "duty.tapping.")
+HIDING = (EARTH_FAULT, "duty.infeed", "duty.out_of_phase.", "duty.tapping.")
 
 
 @dataclass(frozen=True)
@@ -86,6 +86,11 @@ def completeness_checks(missing: Sequence[Missing]) -> tuple[Check, ...]:
     return tuple(Check(f"duty.complete.{a}", None, "1", None, a, reason=reason) for a in ABILITIES)
 
 
+def _loaded(neutral: WindingDuty) -> WindingDuty:
+    """Keep a neutral's current where any case loads it: that none was run which does is no zero."""
+    return neutral if neutral.symmetrical else _nothing()
+
+
 def _nothing() -> WindingDuty:
     return WindingDuty(Largest(None, None), Largest(None, None), Largest(None, None))
 
@@ -101,7 +106,7 @@ def _duty(solved: Solved, data: NetworkData, missing: list[Missing]) -> Duty:
     duty = Duty(
         windings,
         {n: largest("terminal", n) for n in brought_out},
-        {n: largest("neutral", n) if known else _nothing() for n in earthed},
+        {n: _loaded(largest("neutral", n)) if known else _nothing() for n in earthed},
         solved.cases,
         entries,
         {n: _wave(solved, n, d) for n, d in windings.items()},

@@ -115,7 +115,7 @@ def case_entry(solved: Solved, rules: RuleSet, number: int) -> dict[str, Any]:
     }
 
 
-REASON = "no case could be run for it, or the standard gives no peak factor"
+REASON = "no case was run that loads it, or the standard gives no peak factor"
 
 
 def _outcome(name: str, largest: Largest, symbol: str) -> Outcome:

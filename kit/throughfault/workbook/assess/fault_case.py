@@ -204,8 +204,15 @@ def _out_of_phase_alone(unit: Unit, rules: RuleSet) -> list[Missing]:
         return []
     asked = [n for n, given in unit.system.terminals.items() if given.out_of_phase is not None]
     reason = "closing out of phase needs a network at another terminal too"
-    keys = ("system.<other winding>.short_circuit_power",)
-    return [Missing(f"duty.out_of_phase.{name}", keys, reason) for name in asked]
+    brought_out = [name for name, winding in unit.windings.items() if not winding.stabilising]
+    return [
+        Missing(
+            f"duty.out_of_phase.{name}",
+            tuple(f"system.{other}.short_circuit_power" for other in brought_out if other != name),
+            reason,
+        )
+        for name in asked
+    ]
 
 
 def _unknown_power(name: str) -> Missing:

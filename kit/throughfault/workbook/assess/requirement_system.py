@@ -82,12 +82,22 @@ def _ratios(rules: RuleSet, name: str, source: Source, found: Lines) -> tuple[Ta
     if source.x0_over_x1 is not None:
         where = f"unit file, system.{name}.x0_over_x1"
         given = Tabled(source.x0_over_x1, "1", where, "maker", "H", "as given")
-        found.tabled(f"requirement.{name}.x0_over_x1", given, "X_0/X_1", f"zero sequence of the network at {name}")
+        found.tabled(
+            f"requirement.{name}.x0_over_x1",
+            given,
+            "X_0/X_1",
+            f"zero- over positive-sequence impedance of the network at {name}",
+        )
         return (given,)
     scan = rules.x0_over_x1_scan()
     ends = ("x0_over_x1",) if len(scan) == 1 else ("x0_over_x1_least", "x0_over_x1_greatest")
     for end, tabled in zip(ends, scan, strict=True):
-        found.tabled(f"requirement.{name}.{end}", tabled, "X_0/X_1", f"zero sequence of the network at {name}")
+        found.tabled(
+            f"requirement.{name}.{end}",
+            tabled,
+            "X_0/X_1",
+            f"zero- over positive-sequence impedance of the network at {name}",
+        )
     return scan
 
 

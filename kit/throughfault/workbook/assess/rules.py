@@ -206,8 +206,13 @@ class HasStandard(Protocol):
         """The standard as typed in the unit file."""
 
 
-def rules_for(unit: HasStandard) -> RuleSet:
+def rules_for(unit: HasStandard, name: str = "") -> RuleSet:
     """Return the rule set of the standard that the unit names; without an edition the newest the kit carries.
+
+    Parameters
+    ----------
+    name
+        The unit file, for the message.
 
     Raises
     ------
@@ -226,5 +231,6 @@ def rules_for(unit: HasStandard) -> RuleSet:
     if unit.standard not in known:
         names = ", ".join(f'"{name}"' for name in known)
         near = did_you_mean(unit.standard, known)
-        raise InputError(f"standard: must be one of {names}, got {unit.standard!r}{near}.")
+        where = f"{name}: " if name else ""
+        raise InputError(f"{where}standard: must be one of {names}, got {unit.standard!r}{near}.")
     return known[unit.standard]

@@ -84,7 +84,10 @@ class Iec60076Part5:
         rows = table("iec60076_5_2006_source")
         row, source = rows.rows[0], rows.source
         if not two_winding:
-            left_out, reason = False, "the system impedance is left out of units with two separate windings only"
+            left_out, reason = (
+                False,
+                "the system impedance counts: only units with two separate windings may leave it out",
+            )
         elif category != row["neglected_in"]:
             left_out, reason = False, "the system impedance counts in this category"
         elif ratio * 100.0 > row["neglected_up_to"]:
