@@ -291,8 +291,8 @@ def test_what_the_caller_ignores_stays_ignored():
 
 def test_a_page_that_would_load_something_is_no_record(tmp_path, monkeypatch):
     """When the last inspection of the page finds anything the run fails."""
-    monkeypatch.setattr(run, "lint", lambda page: ["a script"])
-    with pytest.raises(RunError, match=r"^record\.html: a script\.$"):
+    monkeypatch.setattr("throughfault.render.record.exporter.lint", lambda page: ["line 3: a script."])
+    with pytest.raises(RunError, match=r"^the record is not clean: line 3: a script\.$"):
         review(T1, tmp_path / "records")
     assert not (tmp_path / "records").exists()
 

@@ -16,7 +16,7 @@ from papermill.exceptions import PapermillExecutionError
 
 from throughfault import __version__
 from throughfault.errors import RecordError, RunError
-from throughfault.render.record import export_record, lint, normalise
+from throughfault.render.record import export_record, normalise
 from throughfault.workbook.assess.rules import rules_for
 from throughfault.workbook.folder import recover_exchange, replace_record, staging_folder
 from throughfault.workbook.inputs import Unit, read_unit
@@ -100,8 +100,6 @@ def fill_record(
     notebook = normalise(_execute(staging, template, progress=progress))
     results = _complete(merge_fragments(emitted_fragments(notebook)), inputs_sha256(staging), template)
     page = export_record(notebook, results)
-    if faults := lint(page):
-        raise RunError(f"record.html: {'; '.join(faults)}.")
     (staging / "record.html").write_text(page, encoding="utf-8", newline="\n")
     (staging / "results.json").write_bytes(results_bytes(results))
     nbformat.write(notebook, str(staging / "workbook.ipynb"))
